@@ -84,6 +84,7 @@ class Series:
     enthalpy_sd_kj_mol: float
     uses_para_minus: bool
     source: str
+    heat_capacity_j_mol_k: float = 0.0  # dCp0, taken as constant
 
 
 @dataclass(frozen=True, slots=True)
