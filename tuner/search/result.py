@@ -1,7 +1,7 @@
 """What does a finished search hand to the report and to the terminal?
 
-Frozen records only: no method, no molecule, no file. A missing number is NaN. pKa values are conditional pKa' in the
-medium of the brief's target unless a field says otherwise.
+Frozen records only: no method, no molecule, no file. A missing number is NaN. pKa values are conditional pKa'
+in the medium of the brief's target unless a field says otherwise.
 """
 
 from __future__ import annotations
@@ -29,13 +29,13 @@ class OtherTarget:
 
 @dataclass(frozen=True, slots=True)
 class Candidate:
-    """One ranked analog. `smiles` is the free dye; where it is bound by an anchor, `pka` is that of the bound form."""
+    """One ranked analog. `smiles` is the free dye; where an anchor binds it, `pka` is that of the bound form."""
 
     rank: int  # from 1
     analog: str  # short name, unique within the run
     smiles: str
     core: str  # name of the core
-    substitution: str  # "2-Cl, 4'-NO2" in the order of the core's positions; "unsubstituted" where there is none
+    substitution: str  # "2-Cl, 4'-NO2" in the order of the core's positions; else "unsubstituted"
     pka: float
     pka_sd: float
     offset: float  # pka - target
@@ -95,7 +95,7 @@ class Campaign:
     candidates: int  # the first so many ranks
     reactions_alone: int
     reactions_together: int
-    shared: tuple[tuple[str, int], ...] = ()  # (intermediate as SMILES, number of candidates that pass through it)
+    shared: tuple[tuple[str, int], ...] = ()  # (intermediate SMILES, candidates through it)
 
 
 @dataclass(frozen=True, slots=True)
