@@ -206,7 +206,7 @@ def _refuse(mol: Mol, text: str, place: str, notes: list[str]) -> None:
             atom.SetIsotope(0)
 
 
-def _spell_oxides(mol: Mol) -> None:
+def spell_oxides(mol: Mol) -> None:
     """`[S+][O-]` -> `S=O`, likewise P, As, Se (in place)."""
     for bond in mol.GetBonds():
         pair = (bond.GetBeginAtom(), bond.GetEndAtom())
@@ -290,7 +290,7 @@ def read_molecule(smiles: str, *, place: str = "") -> Molecule:
         atom.SetAtomMapNum(0)
         atom.SetIntProp("_input", kept[atom.GetIdx()])
     try:
-        _spell_oxides(mol)
+        spell_oxides(mol)
         mol = _neutralise(mol)
         mol = usual_tautomer(mol, notes)
         mol = Chem.RemoveHs(mol)
