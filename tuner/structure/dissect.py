@@ -1,0 +1,285 @@
+"""What is this molecule made of: which ionising sites, and what stands around each?
+
+Rules
+-----
+1. The molecule is read by `molecule.read_molecule` (largest neutral form, usual tautomer).
+2. All ionising sites are found (`sites`). Each phenol and aniline is seen as the largest core that fits; library order
+   breaks ties; the lone rings "phenol" (2 to 6) and "aniline" (2 to 6, N, N') always fit. A core fits where its atoms
+   match and everything else hangs on open positions.
+3. Everything outside the core is cut into groups `*...` (`cutting`); rings fused to it that no core holds are opened,
+   with a note.
+4. Of all equal labelings the one with the lowest locants is taken, then the one whose groups come first in the
+   alphabet in locant order. So every spelling of a molecule gives the same placement.
+5. A diarylamine is seen from the ring with more acceptors, then more groups, then lower atom number.
+6. Other acids on a benzene ring (benzoic, sulfonic, boronic, phosphonic, arsonic acid, thiophenol, sulfonamide) are
+   seen as that ring with groups at 2 to 6; sites on no benzene ring have one group at "1", the rest of the molecule;
+   amines one group for each bond of the nitrogen at N, N', N''.
+7. The reporting site (`sites[0]`): a phenol before an aniline before anything else; then the one with the larger core;
+   then the one with more acceptors on its ring; then the lower atom number. The caller can ask for a kind or an atom.
+
+Atom numbers are those of `Dissection.smiles`; `molecule.read_molecule(...).input_atoms` leads back to the string that
+was given.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping
+from dataclasses import replace
+from functools import lru_cache
+from typing import Any
+
+from rdkit import Chem
+
+from tuner.errors import StructureError
+from tuner.library.records import Core
+from tuner.structure.cores import CoreForm, label_order
+from tuner.structure.cutting import CutGroup, cut_groups
+from tuner.structure.molecule import Molecule, flat, read_molecule
+from tuner.structure.records import Dissection, PlacedGroup, SiteView
+from tuner.structure.scaffolds import CoreIndex, index_cores
+from tuner.structure.sites import Site, find_sites
+from tuner.structure.tautomers import tautomer_notes
+
+Mol = Any
+
+REPORTING_KINDS = ("phenol", "aniline")
+OPENED_NOTE = "a fused ring that no core holds was opened into separate groups"
+MAX_CORE_MATCHES = 2000
+
+_ACCEPTOR = "[$([N+](=O)[O-]),$(N=O),$(C#N),$([CX3]=[OX1]),$(S(=O)=O),$([NX2]=[NX2]),$(C(F)(F)F)]"
+
+
+def dissect(
+    smiles: str,
+    cores: CoreIndex | Mapping[str, Core],
+    *,
+    reporting: str | int = "",
+    place: str = "",
+) -> Dissection:
+    """Take a molecule apart into its ionising sites, each seen as a core with groups.
+
+    Parameters
+    ----------
+    smiles : str
+        One compound.
+    cores : CoreIndex or mapping name -> Core
+        The library's cores; an index (`index_cores`) saves preparing them anew.
+    reporting : str or int
+        Which site reports: "" by rule 7, a kind ("phenol", "aniline", "benzoic_acid" ...), or an atom number of the
+        given string.
+    place : str
+        File and row, for the error text.
+
+    Returns
+    -------
+    Dissection
+        `sites` may be empty where nothing ionises; `notes` say what was assumed.
+
+    Raises
+    ------
+    StructureError
+        Unreadable or untreated structure, or no site of the kind that is asked for.
+
+    >>> found = dissect("Cc1cc(O)ccc1[N+](=O)[O-]", {})
+    >>> found.sites[0].core, [(g.label, g.smiles) for g in found.sites[0].groups]
+    ('phenol', [('3', '*C'), ('4', '*[N+](=O)[O-]')])
+    """
+    index = cores if isinstance(cores, CoreIndex) else index_cores(cores)
+    molecule = read_molecule(smiles, place=place)
+    mol = flat(molecule.mol)
+    notes = [*molecule.notes, *tautomer_notes(mol)]
+    sites = find_sites(mol)
+    views = [_view(mol, site, index, notes) for site in sites]
+    views = _with_other_sites(mol, sites, views)
+    order = _by_rank(mol, sites, views)
+    if reporting != "":
+        order = _asked_for(order, sites, molecule, reporting, place)
+    return Dissection(molecule.smiles, tuple(views[k][0] for k in order), tuple(dict.fromkeys(notes)))
+
+
+_Placed = tuple[SiteView, frozenset[int], int]
+"""A view, the atoms of its core, and the size of the matched core (heavy atoms)."""
+
+
+def _view(mol: Mol, site: Site, index: CoreIndex, notes: list[str]) -> _Placed:
+    """One site as a core with groups, or as a plain group of the molecule."""
+    if site.kind in REPORTING_KINDS:
+        for form in index.forms:
+            best = _best_labeling(mol, site, form)
+            if best is not None:
+                groups, core_atoms, opened = best
+                if opened:
+                    notes.append(OPENED_NOTE)
+                view = SiteView(site.kind, site.reporting, form.core.name, groups, ())
+                return view, core_atoms, form.bare.GetNumAtoms()
+    if site.rings:
+        return _ring_view(mol, site)
+    return _plain_view(mol, site)
+
+
+def _best_labeling(
+    mol: Mol, site: Site, form: CoreForm
+) -> tuple[tuple[PlacedGroup, ...], frozenset[int], bool] | None:
+    """The lowest labeling of one core on one site (rules 4 and 5), None where the core does not fit."""
+    best: tuple[Any, tuple[PlacedGroup, ...], frozenset[int], bool] | None = None
+    cuts: dict[frozenset[int], list[CutGroup]] = {}
+    for match in mol.GetSubstructMatches(form.bare, uniquify=False, maxMatches=MAX_CORE_MATCHES):
+        if match[form.reporting] != site.reporting or not _fits(mol, form, match):
+            continue
+        core = frozenset(match)
+        if core not in cuts:
+            cuts[core] = cut_groups(mol, core)
+        placed = _place(form, match, cuts[core])
+        if placed is None:
+            continue
+        key = (_ring_key(mol, [match[k] for k in form.ring], core), _labeling_key(form, placed))
+        if best is None or key < best[0]:
+            best = (key, placed, core, any(c.opened for c in cuts[core]))
+    return best[1:] if best is not None else None
+
+
+def _fits(mol: Mol, form: CoreForm, match: tuple[int, ...]) -> bool:
+    """Whether only open positions carry more than the core itself, by single or fused aromatic bonds."""
+    room = [0] * len(match)
+    for atom in form.open_atoms.values():
+        room[atom] += 1
+    core = set(match)
+    for here, there in enumerate(match):
+        atom, own = mol.GetAtomWithIdx(there), form.bare.GetAtomWithIdx(here)
+        extra = atom.GetDegree() - own.GetDegree()
+        if not 0 <= extra <= room[here] or atom.GetFormalCharge() != own.GetFormalCharge():
+            return False
+        if extra == 0:
+            continue
+        outside = 0
+        for bond in atom.GetBonds():
+            if bond.GetOtherAtomIdx(there) in core:
+                continue
+            outside += 1
+            if bond.GetBondType() not in (Chem.BondType.SINGLE, Chem.BondType.AROMATIC):
+                return False
+        if outside != extra:
+            return False
+    return True
+
+
+def _place(form: CoreForm, match: tuple[int, ...], cuts: list[CutGroup]) -> tuple[PlacedGroup, ...] | None:
+    """Groups at the open labels of their roots; several on one atom in alphabetical order."""
+    labels: dict[int, list[str]] = {}
+    for label in form.prepared.open_labels:
+        labels.setdefault(match[form.open_atoms[label]], []).append(label)
+    placed = []
+    for root in sorted({c.root for c in cuts}):
+        here = sorted((c for c in cuts if c.root == root), key=lambda c: (c.smiles, c.atoms))
+        if len(here) > len(labels.get(root, ())):
+            return None
+        placed += [PlacedGroup(label, c.smiles, c.atoms) for label, c in zip(labels[root], here, strict=False)]
+    return tuple(sorted(placed, key=lambda g: label_order(g.label)))
+
+
+def _labeling_key(form: CoreForm, placed: Iterable[PlacedGroup]) -> tuple[Any, ...]:
+    """Lowest set of locants first, then group names in locant order."""
+    rank = {label: k for k, label in enumerate(form.prepared.open_labels)}
+    order = sorted((rank[g.label], g.smiles, g.atoms) for g in placed)
+    return tuple(r for r, _, _ in order), tuple(s for _, s, _ in order), tuple(a for _, _, a in order)
+
+
+@lru_cache(maxsize=1)
+def _acceptor() -> Mol:
+    return Chem.MolFromSmarts(_ACCEPTOR)
+
+
+def _acceptors_on(mol: Mol, ring: Iterable[int], skip: frozenset[int] = frozenset()) -> int:
+    """Number of electron acceptors bound to atoms of a ring."""
+    accepting = {m[0] for m in mol.GetSubstructMatches(_acceptor())}
+    members = set(ring)
+    near = {n.GetIdx() for k in members for n in mol.GetAtomWithIdx(k).GetNeighbors()}
+    return len((near - members - skip) & accepting)
+
+
+def _ring_key(mol: Mol, ring: list[int], core: frozenset[int]) -> tuple[int, int, int]:
+    """Rule 5: a ring with more acceptors, then with more groups, comes first."""
+    carried = sum(n.GetIdx() not in core for k in ring for n in mol.GetAtomWithIdx(k).GetNeighbors())
+    return -_acceptors_on(mol, ring), -carried, min(ring) if carried == 0 else ring[0]
+
+
+def _ring_view(mol: Mol, site: Site) -> _Placed:
+    """A site of another kind on a benzene ring: groups at 2 to 6, lowest labeling; others on its own atoms at N."""
+    best: tuple[Any, tuple[PlacedGroup, ...], frozenset[int]] | None = None
+    for ring in site.rings:
+        core = frozenset(ring) | frozenset(site.atoms)
+        cuts = cut_groups(mol, core)
+        for turn in (ring, (ring[0], *ring[:0:-1])):
+            names = {atom: str(k + 1) for k, atom in enumerate(turn)}
+            placed = _named(cuts, names)
+            ranks = tuple(label_order(g.label) for g in placed)
+            key = (ring[0], ranks, tuple(g.smiles for g in placed), tuple(g.atoms for g in placed))
+            if best is None or key < best[0]:
+                best = (key, placed, core)
+    if best is None:  # `site.rings` is not empty
+        return _plain_view(mol, site)
+    return SiteView(site.kind, site.reporting, "", best[1], ()), best[2], 0
+
+
+def _named(cuts: list[CutGroup], names: Mapping[int, str]) -> tuple[PlacedGroup, ...]:
+    """Groups under the given names of their roots, the rest as N, N', N''."""
+    placed, spare = [], 0
+    for cut in sorted(cuts, key=lambda c: (names.get(c.root, "~"), c.smiles, c.atoms)):
+        label = names.get(cut.root)
+        if label is None:
+            label = "N" + "'" * spare
+            spare += 1
+        placed.append(PlacedGroup(label, cut.smiles, cut.atoms))
+    return tuple(sorted(placed, key=lambda g: label_order(g.label)))
+
+
+def _plain_view(mol: Mol, site: Site) -> _Placed:
+    """A site on no benzene ring: the rest of the molecule as one group at "1" (amines: one for each bond)."""
+    core = frozenset(site.atoms)
+    cuts = cut_groups(mol, core)
+    names: dict[int, str] = {}
+    if site.carrier >= 0 and site.kind not in ("aliphatic_amine", "aminoheteroarene"):
+        names = {c.root: "1" for c in cuts if c.entry == site.carrier}
+    return SiteView(site.kind, site.reporting, "", _named(cuts, names), ()), core, 0
+
+
+def _with_other_sites(mol: Mol, sites: list[Site], placed: list[_Placed]) -> list[_Placed]:
+    """Fill in which group of each view holds which other site; "" where the core itself holds it."""
+    done = []
+    near = Chem.GetDistanceMatrix(mol)
+    for view, core, size in placed:
+        others = []
+        for site in sites:
+            if site.reporting == view.reporting_atom:
+                continue
+            holders = [g for g in view.groups if site.reporting in g.atoms]
+            holders.sort(key=lambda g: (min(near[view.reporting_atom][k] for k in g.atoms), label_order(g.label)))
+            others.append((site.reporting, holders[0].label if holders else ""))
+        done.append((replace(view, other_sites=tuple(sorted(others))), core, size))
+    return done
+
+
+def _by_rank(mol: Mol, sites: list[Site], placed: list[_Placed]) -> list[int]:
+    """Order of the sites by rule 7."""
+
+    def key(k: int) -> tuple[int, int, int, int]:
+        view, core, size = placed[k]
+        first = REPORTING_KINDS.index(view.kind) if view.kind in REPORTING_KINDS else len(REPORTING_KINDS)
+        acceptors = _acceptors_on(mol, (a for r in sites[k].rings for a in r if a in core)) if sites[k].rings else 0
+        return first, -size, -acceptors, view.reporting_atom
+
+    return sorted(range(len(sites)), key=key)
+
+
+def _asked_for(order: list[int], sites: list[Site], molecule: Molecule, reporting: str | int, place: str) -> list[int]:
+    """The same order with the site that the caller wants in front."""
+    if isinstance(reporting, int):
+        wanted = [k for k in order if molecule.input_atoms[sites[k].reporting] == reporting]
+    else:
+        wanted = [k for k in order if sites[k].kind == reporting]
+    if not wanted:
+        there = ", ".join(f"{sites[k].kind} (atom {molecule.input_atoms[sites[k].reporting]})" for k in order)
+        raise StructureError(
+            f"no ionising site '{reporting}' in {molecule.smiles}", place=place, remedy=f"it has: {there or 'none'}"
+        )
+    return [wanted[0], *(k for k in order if k != wanted[0])]
