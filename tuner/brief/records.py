@@ -27,13 +27,15 @@ class Target:
     ph: float
     tolerance: float
     medium: Medium
-    role: str = "switches"  # "switches" inside ph +- tolerance; "stays_off" (pKa' above ph + tol); "stays_on" (below)
+    role: str = (
+        "switches"  # "switches" inside ph +- tolerance; "stays_off" (pKa' above ph + tol); "stays_on" (below)
+    )
     name: str = ""
 
 
 @dataclass(frozen=True, slots=True)
 class Reagents:
-    """What may be used: a shelf, and names, SMILES or roles to add or to take away; reactions switched off."""
+    """What may be used: a shelf; names, SMILES or `role:NAME` to add or take away; reactions switched off."""
 
     shelf: str = "example"  # name of a shipped shelf or path of a CSV
     include: tuple[str, ...] = ()
@@ -43,7 +45,7 @@ class Reagents:
 
 @dataclass(frozen=True, slots=True)
 class Groups:
-    """Which groups may, must not, or must stand on the dye; names, short names, `family:NAME` or `smarts:PATTERN`."""
+    """Which groups may, must not, or must stand on the dye: names, `family:NAME` or `smarts:PATTERN`."""
 
     allow: tuple[str, ...] = ()  # empty: every tabulated group that can be made
     forbid: tuple[str, ...] = ()

@@ -29,7 +29,7 @@ class OtherTarget:
 
 @dataclass(frozen=True, slots=True)
 class Candidate:
-    """One ranked analog. `smiles` is the free dye; where an anchor binds it, `pka` is that of the bound form."""
+    """One ranked analog. `smiles` is the free dye; where an anchor binds it, `pka` is of the bound form."""
 
     rank: int  # from 1
     analog: str  # short name, unique within the run
