@@ -131,7 +131,7 @@ def _open_end(
             if not keep:
                 doomed.add(at)
     pi = {k for k, atom in back.items() if atom in wanting}
-    _draw_double_bonds(work, pi - doomed)
+    _draw_double_bonds(work, pi - doomed, near)
     for index in sorted(doomed, reverse=True):
         work.RemoveAtom(index)
     kept_order = [k for k in range(part.GetNumAtoms()) if k not in doomed]
@@ -148,8 +148,8 @@ def _open_end(
     raise AssertionError("the entry atom is always kept")  # pragma: no cover
 
 
-def _draw_double_bonds(work: Any, pi: set[int]) -> None:
-    """Replace aromatic bonds by single and double ones: a matching of the atoms in `pi`, rings first kept whole."""
+def _draw_double_bonds(work: Any, pi: set[int], first: int) -> None:
+    """Replace aromatic bonds by single and double ones: a matching of the atoms in `pi`, `first` among them."""
     edges: dict[int, list[int]] = {k: [] for k in pi}
     for bond in work.GetBonds():
         if not bond.GetIsAromatic():
@@ -162,17 +162,20 @@ def _draw_double_bonds(work: Any, pi: set[int]) -> None:
             edges[b].append(a)
     for atom in work.GetAtoms():
         atom.SetIsAromatic(False)
-    for a, b in best_matching(edges):
+    for a, b in best_matching(edges, first):
         work.GetBondBetweenAtoms(a, b).SetBondType(Chem.BondType.DOUBLE)
 
 
-def best_matching(edges: dict[int, list[int]]) -> list[tuple[int, int]]:
-    """A largest set of bonds that share no atom, deterministic; atoms with the fewest partners are served first.
+def best_matching(edges: dict[int, list[int]], first: int = -1) -> list[tuple[int, int]]:
+    """A largest set of bonds that share no atom, deterministic; among equal ones `first` is bound if it can be.
 
-    Serving leaves first is exact on chains and trees, and on rings of a size that dyes have a short search is.
+    Atoms with the fewest partners are served first, which is exact on chains and trees; on rings of a size that dyes
+    have the short search is.
 
     >>> best_matching({0: [1], 1: [0, 2], 2: [1, 3], 3: [2]})
     [(0, 1), (2, 3)]
+    >>> best_matching({0: [1], 1: [0, 2], 2: [1]}, first=2)
+    [(1, 2)]
     """
     budget = [2000]
 
@@ -192,4 +195,10 @@ def best_matching(edges: dict[int, list[int]]) -> list[tuple[int, int]]:
                 break
         return best
 
-    return sorted(search(frozenset(edges)))
+    every = frozenset(edges)
+    plain = search(every)
+    for near in sorted(edges.get(first, ())):
+        led = [(min(first, near), max(first, near)), *search(every - {first, near})]
+        if len(led) >= len(plain):
+            return sorted(led)
+    return sorted(plain)

@@ -12,7 +12,7 @@ Rules
    alphabet in locant order. So every spelling of a molecule gives the same placement.
 5. A diarylamine is seen from the ring with more acceptors, then more groups, then lower atom number.
 6. Other acids on a benzene ring (benzoic, sulfonic, boronic, phosphonic, arsonic acid, thiophenol, sulfonamide) are
-   seen as that ring with groups at 2 to 6; sites on no benzene ring have one group at "1", the rest of the molecule;
+   seen as that ring with groups at 2 to 6; ring nitrogens as their own ring, the nitrogen being 1; sites on no ring have one group at "1", the rest of the molecule;
    amines one group for each bond of the nitrogen at N, N', N''.
 7. The reporting site (`sites[0]`): a phenol before an aniline before anything else; then the one with the larger core;
    then the one with more acceptors on its ring; then the lower atom number. The caller can ask for a kind or an atom.
@@ -32,11 +32,11 @@ from rdkit import Chem
 
 from tuner.errors import StructureError
 from tuner.library.records import Core
-from tuner.structure.cores import CoreForm, label_order
+from tuner.structure.cores import CoreForm, form_of, label_order
 from tuner.structure.cutting import CutGroup, cut_groups
 from tuner.structure.molecule import Molecule, flat, read_molecule
 from tuner.structure.records import Dissection, PlacedGroup, SiteView
-from tuner.structure.scaffolds import CoreIndex, index_cores
+from tuner.structure.scaffolds import SCAFFOLD_CORES, CoreIndex, index_cores
 from tuner.structure.sites import Site, find_sites
 from tuner.structure.tautomers import tautomer_notes
 
@@ -110,7 +110,20 @@ def _view(mol: Mol, site: Site, index: CoreIndex, notes: list[str]) -> _Placed:
                 groups, core_atoms, opened = best
                 if opened:
                     notes.append(OPENED_NOTE)
-                view = SiteView(site.kind, site.reporting, form.core.name, groups, ())
+                scaffold = form.prepared.scaffold
+                ring_groups = groups
+                if scaffold in SCAFFOLD_CORES and form.core.name != scaffold:
+                    lone = _best_labeling(mol, site, form_of(SCAFFOLD_CORES[scaffold]))
+                    ring_groups = lone[0] if lone is not None else groups
+                view = SiteView(
+                    site.kind,
+                    site.reporting,
+                    form.core.name,
+                    groups,
+                    (),
+                    scaffold=scaffold,
+                    scaffold_groups=ring_groups,
+                )
                 return view, core_atoms, form.bare.GetNumAtoms()
     if site.rings:
         return _ring_view(mol, site)

@@ -60,14 +60,21 @@ class PlacedGroup:
 
 @dataclass(frozen=True, slots=True)
 class SiteView:
-    """One ionising site of a molecule, seen as a core with groups on it."""
+    """One ionising site of a molecule, seen as a core with groups on it.
+
+    `groups` stand on the open positions of `core`; hydrogen is left out. Where that core lies on a lone benzene ring, `scaffold` is "phenol" or
+    "aniline" and `scaffold_groups` is the same site seen as that bare ring: 2 to 6 (and N, N'), what the core carries itself included. For
+    other cores `scaffold` is the core's own name and both tuples are the same.
+    """
 
     kind: str  # a series name, or "aliphatic_amine", "aliphatic_acid", "sulfonic_acid", "thiol" ...
     reporting_atom: int
     core: str  # name of the matched core, "" for sites that are no phenol or aniline core
     groups: tuple[PlacedGroup, ...]
-    other_sites: tuple[tuple[int, str], ...]  # (reporting atom of another site, label of the group that holds it)
+    other_sites: tuple[tuple[int, str], ...]  # (reporting atom of another site, label of the group in `groups` that holds it; "": the core)
     note: str = ""
+    scaffold: str = ""  # "" for sites that are no phenol or aniline
+    scaffold_groups: tuple[PlacedGroup, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -19,8 +19,11 @@ _PLAIN_N = "NX3;+0;!$(N-[#6]=[O,S,N,P]);!$(N-C#N);!$(N-[!#6;!#1]);!$(N-[#6]=[#6]
 SITE_PATTERNS: tuple[tuple[str, str], ...] = (
     ("sulfonic_acid", "[OX2H1:1]S(=O)(=O)[#6,#7,#8:2]"),
     ("sulfinic_acid", "[OX2H1:1][SX3](=O)[#6:2]"),
+    ("phosphonic_acid", "[OX2H1:1]P(=O)([OX2H1])[#6,#7,#8:2]"),
+    ("arsonic_acid", "[OX2H1:1][As](=O)([OX2H1])[#6,#8:2]"),
     ("phosphonic_acid", "[OX2H1:1]P(=O)[#6,#7,#8:2]"),
     ("arsonic_acid", "[OX2H1:1][As](=O)[#6,#8:2]"),
+    ("boronic_acid", "[BX3:1]([OX2H1])([OX2H1])[#6,#8:2]"),
     ("boronic_acid", "[BX3:1]([OX2H1])([OX2])[#6,#8:2]"),
     ("carboxylic_acid", "[OX2H1:1][CX3](=O)[#6,#1:2]"),
     ("thioacid", "[SX2H1:1][CX3](=O)[#6:2]"),
@@ -30,7 +33,7 @@ SITE_PATTERNS: tuple[tuple[str, str], ...] = (
     ("thiophenol", "[SX2H1:1][c:2]"),
     ("thiol", "[SX2H1:1][CX4:2]"),
     ("sulfonamide", "[NX3;H1,H2;+0:1]S(=O)(=O)[#6:2]"),
-    ("imide", "[NX3;H1;$(N(C=O)C=O):1]C(=O)[#6,#7:2]"),
+    ("imide", "[NX3;H1;$(N(C=[O,S])C=[O,S]):1]C(=[O,S])[#6,#7,#16:2]"),
     ("tetrazole", "[nH;$([nH]1nnnc1),$([nH]1nncn1):1]"),
     ("guanidine", "[NX2;+0:1]=[CX3]([NX3;!$(N-C=O)])[NX3;!$(N-C=O):2]"),
     ("amidine", "[NX2;+0;!$(N-[!#6;!#1]):1]=[CX3]([NX3;!$(N-C=O);!$(N-S)])[#6:2]"),
@@ -56,12 +59,16 @@ PLAIN_KINDS = {"carboxylic_acid": "aliphatic_acid", "phenol": "hydroxyheteroaren
 """What a site is called where it is not (a phenol or aniline pattern on a heteroaromatic ring)."""
 
 
+HETERORINGS = ("tetrazole", "pyridine", "azole")
+"""Kinds whose reporting atom is part of an aromatic ring; seen as that ring, the reporting atom is number 1."""
+
+
 @dataclass(frozen=True, slots=True)
 class Site:
     """One ionising site as found, before it is seen as a core.
 
     `atoms` are all atoms of the group itself (without the carrier). `rings` are the benzene rings that the site sits
-    on, each listed from the carrier on; more than one for diarylamines.
+    on, each listed from the carrier on; more than one for diarylamines. For a ring nitrogen it is its own ring.
     """
 
     kind: str
@@ -82,6 +89,13 @@ def benzene_rings(mol: Mol, atom: int) -> list[tuple[int, ...]]:
             at = ring.index(atom)
             found.append(tuple(ring[at:] + ring[:at]))
     return found
+
+
+def _smallest_ring(mol: Mol, atom: int) -> tuple[int, ...]:
+    """The smallest ring through an atom, listed from that atom on."""
+    ring = min((r for r in mol.GetRingInfo().AtomRings() if atom in r), key=lambda r: (len(r), r))
+    at = ring.index(atom)
+    return tuple(ring[at:] + ring[:at])
 
 
 def _compiled() -> list[tuple[str, Mol, int, int]]:
@@ -120,9 +134,11 @@ def _site(mol: Mol, kind: str, places: list[tuple[int, ...]], one: int, two: int
     if two >= 0:
         rings = {ring for match in places for ring in benzene_rings(mol, match[two])}
     match = places[0]
-    if rings:
+    if kind in HETERORINGS:
+        rings = {_smallest_ring(mol, places[0][one])}
+    elif rings:
         match = next(m for m in places if benzene_rings(mol, m[two]))
     carrier = match[two] if two >= 0 else -1
-    name = (RING_KINDS if rings else PLAIN_KINDS).get(kind, kind)
+    name = kind if kind in HETERORINGS else (RING_KINDS if rings else PLAIN_KINDS).get(kind, kind)
     atoms = tuple(sorted(set(match) - {carrier}))
     return Site(name, match[one], carrier, atoms, tuple(sorted(rings)))

@@ -26,7 +26,7 @@ _PARTNERS = (
     ("[OX2H1]-c1:c:c:c(-[NX2]=[NX2]-[#6]):c2:c:c:c:c:c:1:2", "4-arylazo-1-naphthol: exists in part as the quinone hydrazone"),
     ("[OX2H1]-c:c-[NX2]=[OX1]", "ortho-nitrosophenol or -naphthol: exists in part as the quinone oxime"),
     ("[OX2H1]-c1:c:c:c(-[NX2]=[OX1]):c:c:1", "para-nitrosophenol: exists in part as the quinone oxime"),
-    ("[NX3;!$(N-C=O);!$(N-S)]-c1:c:c:c(-[NX2]=[NX2]-[#6]):c:c:1", "aminoazo dye: its acid form is in part protonated at the azo nitrogen"),
+    ("[NX3;+0;!$(N-C=O);!$(N-S)]-c1:c:c:c(-[NX2]=[NX2]-[#6]):c:c:1", "aminoazo dye: its acid form is in part protonated at the azo nitrogen"),
 )
 
 
