@@ -1,4 +1,6 @@
-"""Which analogs are there? Cores with a list of choices at each open position, and additive limits, without a molecule."""
+"""Which analogs are there? Cores with a list of choices at each open position, and additive limits, without
+a molecule.
+"""
 
 from __future__ import annotations
 
@@ -15,7 +17,8 @@ from tuner.structure.records import PreparedCore
 class Choice:
     """One choice at one position: the group as made (`free`) and the group whose constants act (`acting`).
 
-    They differ where the group ionises at the target pH or is the handle by which the dye is bound to its carrier.
+    They differ where the group ionises at the target pH or is the handle by which the dye is bound to its
+    carrier.
     """
 
     free: Substituent
@@ -25,7 +28,9 @@ class Choice:
 
 @dataclass(frozen=True)
 class CountLimit:
-    """low <= sum over positions of weight[p][choice] <= high; e.g. number of groups, of anchors, of a required group."""
+    """low <= sum over positions of weight[p][choice] <= high; e.g. number of groups, of anchors, of a
+    required group.
+    """
 
     name: str
     weights: tuple[NDArray[np.int64], ...]
@@ -35,7 +40,9 @@ class CountLimit:
 
 @dataclass(frozen=True)
 class CoreSpace:
-    """All patterns of one core: `choices[p][k]` is choice k at open position p; hydrogen comes first where allowed."""
+    """All patterns of one core: `choices[p][k]` is choice k at open position p; hydrogen comes first where
+    allowed.
+    """
 
     core: Core
     prepared: PreparedCore
