@@ -1,0 +1,1 @@
+"""What must not be made, and what needs a caution?"""
