@@ -3,9 +3,10 @@
 Rules
 -----
 1. The molecule is read by `molecule.read_molecule` (largest neutral form, usual tautomer).
-2. All ionising sites are found (`sites`). Each phenol and aniline is seen as the largest core that fits; library order
-   breaks ties; the lone rings "phenol" (2 to 6) and "aniline" (2 to 6, N, N') always fit. A core fits where its atoms
-   match and everything else hangs on open positions.
+2. All ionising sites are found (`sites`). Each phenol and aniline is seen as a core that fits: the one that leaves the
+   fewest rings to be opened (rule 3) on the reporting ring (on lone-ring scaffolds: anywhere), of these the largest;
+   library order breaks ties. The lone rings "phenol" (2 to 6) and "aniline" (2 to 6, N, N') always fit. A core fits where its atoms match and everything else hangs on
+   open positions.
 3. Everything outside the core is cut into groups `*...` (`cutting`); rings fused to it that no core holds are opened,
    with a note.
 4. Of all equal labelings the one with the lowest locants is taken, then the one whose groups come first in the
@@ -24,7 +25,7 @@ was given.
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from dataclasses import replace
+from dataclasses import dataclass, replace
 from functools import lru_cache
 from typing import Any
 
@@ -104,37 +105,65 @@ _Placed = tuple[SiteView, frozenset[int], int]
 def _view(mol: Mol, site: Site, index: CoreIndex, notes: list[str]) -> _Placed:
     """One site as a core with groups, or as a plain group of the molecule."""
     if site.kind in REPORTING_KINDS:
-        for form in index.forms:
-            best = _best_labeling(mol, site, form)
-            if best is not None:
-                groups, core_atoms, opened = best
-                if opened:
-                    notes.append(OPENED_NOTE)
-                scaffold = form.prepared.scaffold
-                ring_groups = groups
-                if scaffold in SCAFFOLD_CORES and form.core.name != scaffold:
-                    lone = _best_labeling(mol, site, form_of(SCAFFOLD_CORES[scaffold]))
-                    ring_groups = lone[0] if lone is not None else groups
-                view = SiteView(
-                    site.kind,
-                    site.reporting,
-                    form.core.name,
-                    groups,
-                    (),
-                    scaffold=scaffold,
-                    scaffold_groups=ring_groups,
-                )
-                return view, core_atoms, form.bare.GetNumAtoms()
+        found = _best_core(mol, site, index)
+        if found is not None:
+            form, labeling = found
+            if labeling.opened:
+                notes.append(OPENED_NOTE)
+            return _core_view(mol, site, form, labeling)
     if site.rings:
         return _ring_view(mol, site)
     return _plain_view(mol, site)
 
 
-def _best_labeling(
-    mol: Mol, site: Site, form: CoreForm
-) -> tuple[tuple[PlacedGroup, ...], frozenset[int], bool] | None:
+@dataclass(frozen=True)
+class _Labeling:
+    """One way to see a site as a core."""
+
+    groups: tuple[PlacedGroup, ...]
+    core: frozenset[int]  # atoms of the molecule that the core takes
+    opened: int  # number of groups that opened rings gave
+    opened_here: int  # those on the reporting ring or the reporting atom
+
+
+def _best_core(mol: Mol, site: Site, index: CoreIndex) -> tuple[CoreForm, _Labeling] | None:
+    """The core of rule 2 and its labeling."""
+    best: tuple[tuple[int, int], CoreForm, _Labeling] | None = None
+    for form in index.forms:
+        labeling = _best_labeling(mol, site, form)
+        if labeling is None:
+            continue
+        elsewhere = labeling.opened if form.prepared.scaffold in SCAFFOLD_CORES else 0
+        key = (labeling.opened_here, elsewhere)
+        if best is None or key < best[0]:
+            best = (key, form, labeling)
+        if best[0] == (0, 0):
+            break
+    return best[1:] if best is not None else None
+
+
+def _core_view(mol: Mol, site: Site, form: CoreForm, labeling: _Labeling) -> _Placed:
+    """A site on its core, and on the bare ring below it."""
+    scaffold = form.prepared.scaffold
+    on_ring = labeling.groups
+    if scaffold in SCAFFOLD_CORES and form.core.name != scaffold:
+        lone = _best_labeling(mol, site, form_of(SCAFFOLD_CORES[scaffold]))
+        on_ring = lone.groups if lone is not None else on_ring
+    view = SiteView(
+        site.kind,
+        site.reporting,
+        form.core.name,
+        labeling.groups,
+        (),
+        scaffold=scaffold,
+        scaffold_groups=on_ring,
+    )
+    return view, labeling.core, form.bare.GetNumAtoms()
+
+
+def _best_labeling(mol: Mol, site: Site, form: CoreForm) -> _Labeling | None:
     """The lowest labeling of one core on one site (rules 4 and 5), None where the core does not fit."""
-    best: tuple[Any, tuple[PlacedGroup, ...], frozenset[int], bool] | None = None
+    best: tuple[Any, _Labeling] | None = None
     cuts: dict[frozenset[int], list[CutGroup]] = {}
     for match in mol.GetSubstructMatches(form.bare, uniquify=False, maxMatches=MAX_CORE_MATCHES):
         if match[form.reporting] != site.reporting or not _fits(mol, form, match):
@@ -147,8 +176,10 @@ def _best_labeling(
             continue
         key = (_ring_key(mol, [match[k] for k in form.ring], core), _labeling_key(form, placed))
         if best is None or key < best[0]:
-            best = (key, placed, core, any(c.opened for c in cuts[core]))
-    return best[1:] if best is not None else None
+            here = {match[k] for k in form.ring} | {site.reporting}
+            opened = [c.root in here for c in cuts[core] if c.opened]
+            best = (key, _Labeling(placed, core, len(opened), sum(opened)))
+    return best[1] if best is not None else None
 
 
 def _fits(mol: Mol, form: CoreForm, match: tuple[int, ...]) -> bool:
