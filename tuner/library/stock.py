@@ -8,7 +8,7 @@ toolkit passes a function that spells them canonically, and gets a shelf whose S
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
 from dataclasses import replace
 from functools import lru_cache
 from pathlib import Path
@@ -30,12 +30,8 @@ PRICE_LIMIT = 1e9
 """A price per mole beyond this is a slip, in any currency."""
 
 
-class Canonical(Protocol):
-    """A function that spells a SMILES canonically and names `place` in its error."""
-
-    def __call__(self, smiles: str, *, place: str = "") -> str:
-        """The canonical spelling."""
-        ...  # the signature is all that a protocol holds
+Canonical = Callable[..., str]
+"""A function (smiles, *, place="") -> canonical SMILES that names `place` in its error."""
 
 
 class ReagentChoice(Protocol):
