@@ -1,8 +1,8 @@
 """Is this TOML file a sound brief, and what does it ask for?
 
-Everything that can be told from the file and the library alone is checked here, so that a slip is named with its
-line before any chemistry starts. What needs a structure (SMILES, SMARTS, reach of the cores) is checked by
-the design space.
+Everything that can be told from the file and the library alone is checked here, so that a slip is named
+with its line before any chemistry starts. What needs a structure (SMILES, SMARTS, reach of the cores) is
+checked by the design space.
 """
 
 from __future__ import annotations

@@ -1,0 +1,88 @@
+"""How is a picture written as SVG that follows the page's colours?"""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass
+from math import ceil, floor, log10
+from xml.sax.saxutils import escape, quoteattr
+
+DECLARATION = re.compile(r"<\?xml[^>]*\?>|<!DOCTYPE[^>]*>|<!--.*?-->", re.DOTALL)
+BACKDROP = re.compile(
+    r"<rect[^>]*(?:fill:\s*#FFFFFF|fill=['\"]#?(?:FFFFFF|white)['\"])[^>]*(?:/>|>\s*</rect>)", re.I
+)
+BLACK = re.compile(r"#000000|(?<=[:'\"])black\b", re.I)
+SIZE = re.compile(r"(<svg\b[^>]*?)\s(?:width|height)=['\"][^'\"]*['\"]")
+
+
+@dataclass(frozen=True, slots=True)
+class Scale:
+    """A straight line from data to pixels."""
+
+    low: float
+    high: float
+    start: float
+    end: float
+
+    def __call__(self, value: float) -> float:
+        """Pixel of a value."""
+        span = self.high - self.low
+        return self.start + (value - self.low) / span * (self.end - self.start) if span else self.start
+
+    def holds(self, value: float) -> bool:
+        """Whether the value lies on the axis."""
+        return self.low <= value <= self.high
+
+
+def ticks(low: float, high: float, wanted: int = 8) -> tuple[float, ...]:
+    """Round numbers within [low, high], about as many as wanted.
+
+    >>> ticks(-1.0, 1.0, 4)
+    (-1.0, -0.5, 0.0, 0.5, 1.0)
+    """
+    if not high > low:
+        return (low,)
+    raw = (high - low) / wanted
+    power = 10.0 ** floor(log10(raw))
+    step = next(power * m for m in (1.0, 2.0, 5.0, 10.0) if power * m >= raw * 0.999)
+    first, last = ceil(low / step - 1e-9), floor(high / step + 1e-9)
+    return tuple(round(i * step, 10) + 0.0 for i in range(first, last + 1))
+
+
+def element(name: str, content: str = "", **attributes: object) -> str:
+    """An element; `class_` gives class, underscores in names become hyphens, numbers get one decimal."""
+    parts = [name]
+    for key, value in attributes.items():
+        shown = f"{value:.1f}" if isinstance(value, float) else str(value)
+        parts.append(f"{key.rstrip('_').replace('_', '-')}={quoteattr(shown)}")
+    opening = " ".join(parts)
+    return f"<{opening}>{content}</{name}>" if content else f"<{opening}/>"
+
+
+def text(words: str, x: float, y: float, class_: str = "", anchor: str = "start", **more: object) -> str:
+    """A line of text, escaped."""
+    return element("text", escape(words), x=x, y=y, class_=class_, text_anchor=anchor, **more)
+
+
+def hover(words: str) -> str:
+    """A title that shows when the pointer rests on the element around it."""
+    return element("title", escape(words))
+
+
+def picture(content: str, width: float, height: float, label: str, class_: str) -> str:
+    """The whole picture, scalable, with words for those who cannot see it."""
+    return (
+        f'<svg xmlns="http://www.w3.org/2000/svg" class={quoteattr(class_)} '
+        f'viewBox="0 0 {width:.0f} {height:.0f}" role="img" aria-label={quoteattr(label)}>{content}</svg>'
+    )
+
+
+def themed(svg: str) -> str:
+    """A structure drawing for the page: no declaration, no white backdrop, black becomes the page's ink,
+    size by CSS.
+    """
+    bare = BACKDROP.sub("", DECLARATION.sub("", svg))
+    bare = BLACK.sub("currentColor", bare)
+    while SIZE.search(bare):
+        bare = SIZE.sub(r"\1", bare)
+    return bare.strip()
