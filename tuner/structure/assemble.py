@@ -1,8 +1,8 @@
 """Which molecule is this pattern of groups on a core?
 
-The core's SMILES is kept as a template, written from the reporting atom on; a group is written into the place of its
-position as a branch, with ring-closure digits that the core does not use. One reading and one canonical writing per
-molecule is all that it costs (about 0.2 ms).
+The core's SMILES is kept as a template, written from the reporting atom on; a group is written into the
+place of its position as a branch, with ring-closure digits that the core does not use. One reading and one
+canonical writing per molecule is all that it costs (about 0.2 ms).
 """
 
 from __future__ import annotations
@@ -27,7 +27,8 @@ _POSITION = re.compile(r"\(\[\*:(\d+)\]\)|\[\*:(\d+)\]")
 
 @lru_cache(maxsize=16384)
 def branch_of(group: str) -> str:
-    """A group as the text that replaces its position in a template: "" for hydrogen, else "-..." from its first atom.
+    """A group as the text that replaces its position in a template: "" for hydrogen, else "-..." from its
+    first atom.
 
     >>> branch_of("*Oc1ccccc1")
     '-Oc%30ccccc%30'

@@ -2,16 +2,17 @@
 
 The core's atoms are fixed; every bond that leaves them is cut and each piece becomes a group `*...`.
 
-A piece that hangs on one bond is the group as it is. A piece that bridges two or more positions (a fused ring) is
-opened, once for each position, so that each position sees what its own end of the bridge holds:
+A piece that hangs on one bond is the group as it is. A piece that bridges two or more positions (a fused
+ring) is opened, once for each position, so that each position sees what its own end of the bridge holds:
 
 - the atom at the other end of the bridge is taken away with what hangs on it only ...
-- ... unless it is part of a ring of the piece itself (fluorene: the far benzene ring stays), or it is O, S or N on a
-  carbonyl carbon (coumarin: the ester stays an ester); then it is kept and its valence closed with hydrogen or methyl;
+- ... unless it is part of a ring of the piece itself (fluorene: the far benzene ring stays), or it is O, S
+  or N on a carbonyl carbon (coumarin: the ester stays an ester); then it is kept and its valence closed
+  with hydrogen or methyl;
 - aromatic atoms that are no ring any more get the double bonds that fit, the rest hydrogen.
 
-So 1-naphthol without a naphthol core is phenol with `*C=CC` at 2 and at 3; methylenedioxy is two methoxy groups;
-tetralone is a propanoyl and a propyl group.
+So 1-naphthol without a naphthol core is phenol with `*C=CC` at 2 and at 3; methylenedioxy is two methoxy
+groups; tetralone is a propanoyl and a propyl group.
 """
 
 from __future__ import annotations
@@ -69,7 +70,9 @@ def cut_groups(mol: Mol, core: frozenset[int]) -> list[CutGroup]:
     return sorted(found, key=lambda g: (g.root, g.entry))
 
 
-def _open_bridge(mol: Mol, part: Mol, members: tuple[int, ...], ends: list[tuple[int, int]]) -> list[CutGroup]:
+def _open_bridge(
+    mol: Mol, part: Mol, members: tuple[int, ...], ends: list[tuple[int, int]]
+) -> list[CutGroup]:
     """The groups that one bridging piece gives, one for each of its ends."""
     number = {atom: k for k, atom in enumerate(members)}
     wanting = _wants_double_bond(mol)
@@ -149,7 +152,8 @@ def _open_end(
 
 
 def _draw_double_bonds(work: Any, pi: set[int], first: int) -> None:
-    """Replace aromatic bonds by single and double ones: a matching of the atoms in `pi`, `first` among them."""
+    """Replace aromatic bonds by single and double ones: a matching of the atoms in `pi`, `first` among
+    them."""
     edges: dict[int, list[int]] = {k: [] for k in pi}
     for bond in work.GetBonds():
         if not bond.GetIsAromatic():
@@ -167,10 +171,11 @@ def _draw_double_bonds(work: Any, pi: set[int], first: int) -> None:
 
 
 def best_matching(edges: dict[int, list[int]], first: int = -1) -> list[tuple[int, int]]:
-    """A largest set of bonds that share no atom, deterministic; among equal ones `first` is bound if it can be.
+    """A largest set of bonds that share no atom, deterministic; among equal ones `first` is bound if it can
+    be.
 
-    Atoms with the fewest partners are served first, which is exact on chains and trees; on rings of a size that dyes
-    have the short search is.
+    Atoms with the fewest partners are served first, which is exact on chains and trees; on rings of a size
+    that dyes have the short search is.
 
     >>> best_matching({0: [1], 1: [0, 2], 2: [1, 3], 3: [2]})
     [(0, 1), (2, 3)]

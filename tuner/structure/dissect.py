@@ -3,39 +3,42 @@
 Rules
 -----
 1. The molecule is read by `molecule.read_molecule` (largest neutral form, usual tautomer).
-2. All ionising sites are found (`sites`). Each phenol and aniline is seen as a core that fits: the one that leaves the
-   fewest rings to be opened (rule 3) on the reporting ring (on lone-ring scaffolds: anywhere), of these the largest;
-   library order breaks ties. The lone rings "phenol" (2 to 6) and "aniline" (2 to 6, N, N') always fit. A core fits where its atoms match and everything else hangs on
-   open positions.
-3. Everything outside the core is cut into groups `*...` (`cutting`); rings fused to it that no core holds are opened,
-   with a note.
-4. Of all equal labelings the one with the lowest locants is taken, then the one whose groups come first in the
-   alphabet in locant order. So every spelling of a molecule gives the same placement.
+2. All ionising sites are found (`sites`). Each phenol and aniline is seen as a core that fits: the one that
+   leaves the fewest rings to be opened (rule 3) on the reporting ring (on lone-ring scaffolds: anywhere),
+   of these the largest; library order breaks ties. The lone rings "phenol" (2 to 6) and "aniline" (2 to 6,
+   N, N') always fit. A core fits where its atoms match and everything else hangs on open positions.
+3. Everything outside the core is cut into groups `*...` (`cutting`); rings fused to it that no core holds
+   are opened, with a note.
+4. Of all equal labelings the one with the lowest locants is taken, then the one whose groups come first in
+   the alphabet in locant order. So every spelling of a molecule gives the same placement.
 5. A diarylamine is seen from the ring with more acceptors, then more groups, then lower atom number.
-6. Other acids on a benzene ring (benzoic, sulfonic, boronic, phosphonic, arsonic acid, thiophenol, sulfonamide) are
-   seen as that ring with groups at 2 to 6; ring nitrogens as their own ring, the nitrogen being 1; sites on no ring have one group at "1", the rest of the molecule;
-   amines one group for each bond of the nitrogen at N, N', N''.
-7. The reporting site (`sites[0]`): a phenol before an aniline before anything else; then the one with the larger core;
-   then the one with more acceptors on its ring; then the lower atom number. The caller can ask for a kind or an atom.
+6. Other acids on a benzene ring (benzoic, sulfonic, boronic, phosphonic, arsonic acid, thiophenol,
+   sulfonamide) are seen as that ring with groups at 2 to 6; ring nitrogens as their own ring, the nitrogen
+   being 1; sites on no ring have one group at "1", the rest of the molecule; amines one group for each bond
+   of the nitrogen at N, N', N''.
+7. The reporting site (`sites[0]`): a phenol before an aniline before anything else; then the one with the
+   larger core; then the one with more acceptors on its ring; then the lower atom number. The caller can ask
+   for a kind or an atom.
 
-Atom numbers are those of `Dissection.smiles`; `molecule.read_molecule(...).input_atoms` leads back to the string that
-was given.
+Atom numbers are those of `Dissection.smiles`; `molecule.read_molecule(...).input_atoms` leads back to the
+string that was given.
 """
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, replace
-from functools import lru_cache
+from collections.abc import Mapping
+from dataclasses import replace
 from typing import Any
 
 from rdkit import Chem
 
 from tuner.errors import StructureError
 from tuner.library.records import Core
-from tuner.structure.cores import CoreForm, form_of, label_order
+from tuner.structure.cores import CoreForm, form_of
 from tuner.structure.cutting import CutGroup, cut_groups
+from tuner.structure.matching import Labeling, acceptors_on, best_labeling
 from tuner.structure.molecule import Molecule, flat, read_molecule
+from tuner.structure.positions import label_order
 from tuner.structure.records import Dissection, PlacedGroup, SiteView
 from tuner.structure.scaffolds import SCAFFOLD_CORES, CoreIndex, index_cores
 from tuner.structure.sites import Site, find_sites
@@ -45,9 +48,6 @@ Mol = Any
 
 REPORTING_KINDS = ("phenol", "aniline")
 OPENED_NOTE = "a fused ring that no core holds was opened into separate groups"
-MAX_CORE_MATCHES = 2000
-
-_ACCEPTOR = "[$([N+](=O)[O-]),$(N=O),$(C#N),$([CX3]=[OX1]),$(S(=O)=O),$([NX2]=[NX2]),$(C(F)(F)F)]"
 
 
 def dissect(
@@ -66,10 +66,8 @@ def dissect(
     cores : CoreIndex or mapping name -> Core
         The library's cores; an index (`index_cores`) saves preparing them anew.
     reporting : str or int
-        Which site reports: "" by rule 7, a kind ("phenol", "aniline", "benzoic_acid" ...), or an atom number of the
-        given string.
-    place : str
-        File and row, for the error text.
+        Which site reports: "" by rule 7, a kind ("phenol", "aniline", "benzoic_acid" ...), or an atom
+        number of the given string. place : str File and row, for the error text.
 
     Returns
     -------
@@ -116,21 +114,11 @@ def _view(mol: Mol, site: Site, index: CoreIndex, notes: list[str]) -> _Placed:
     return _plain_view(mol, site)
 
 
-@dataclass(frozen=True)
-class _Labeling:
-    """One way to see a site as a core."""
-
-    groups: tuple[PlacedGroup, ...]
-    core: frozenset[int]  # atoms of the molecule that the core takes
-    opened: int  # number of groups that opened rings gave
-    opened_here: int  # those on the reporting ring or the reporting atom
-
-
-def _best_core(mol: Mol, site: Site, index: CoreIndex) -> tuple[CoreForm, _Labeling] | None:
+def _best_core(mol: Mol, site: Site, index: CoreIndex) -> tuple[CoreForm, Labeling] | None:
     """The core of rule 2 and its labeling."""
-    best: tuple[tuple[int, int], CoreForm, _Labeling] | None = None
+    best: tuple[tuple[int, int], CoreForm, Labeling] | None = None
     for form in index.forms:
-        labeling = _best_labeling(mol, site, form)
+        labeling = best_labeling(mol, site.reporting, form)
         if labeling is None:
             continue
         elsewhere = labeling.opened if form.prepared.scaffold in SCAFFOLD_CORES else 0
@@ -142,12 +130,12 @@ def _best_core(mol: Mol, site: Site, index: CoreIndex) -> tuple[CoreForm, _Label
     return best[1:] if best is not None else None
 
 
-def _core_view(mol: Mol, site: Site, form: CoreForm, labeling: _Labeling) -> _Placed:
+def _core_view(mol: Mol, site: Site, form: CoreForm, labeling: Labeling) -> _Placed:
     """A site on its core, and on the bare ring below it."""
     scaffold = form.prepared.scaffold
     on_ring = labeling.groups
     if scaffold in SCAFFOLD_CORES and form.core.name != scaffold:
-        lone = _best_labeling(mol, site, form_of(SCAFFOLD_CORES[scaffold]))
+        lone = best_labeling(mol, site.reporting, form_of(SCAFFOLD_CORES[scaffold]))
         on_ring = lone.groups if lone is not None else on_ring
     view = SiteView(
         site.kind,
@@ -161,94 +149,9 @@ def _core_view(mol: Mol, site: Site, form: CoreForm, labeling: _Labeling) -> _Pl
     return view, labeling.core, form.bare.GetNumAtoms()
 
 
-def _best_labeling(mol: Mol, site: Site, form: CoreForm) -> _Labeling | None:
-    """The lowest labeling of one core on one site (rules 4 and 5), None where the core does not fit."""
-    best: tuple[Any, _Labeling] | None = None
-    cuts: dict[frozenset[int], list[CutGroup]] = {}
-    for match in mol.GetSubstructMatches(form.bare, uniquify=False, maxMatches=MAX_CORE_MATCHES):
-        if match[form.reporting] != site.reporting or not _fits(mol, form, match):
-            continue
-        core = frozenset(match)
-        if core not in cuts:
-            cuts[core] = cut_groups(mol, core)
-        placed = _place(form, match, cuts[core])
-        if placed is None:
-            continue
-        key = (_ring_key(mol, [match[k] for k in form.ring], core), _labeling_key(form, placed))
-        if best is None or key < best[0]:
-            here = {match[k] for k in form.ring} | {site.reporting}
-            opened = [c.root in here for c in cuts[core] if c.opened]
-            best = (key, _Labeling(placed, core, len(opened), sum(opened)))
-    return best[1] if best is not None else None
-
-
-def _fits(mol: Mol, form: CoreForm, match: tuple[int, ...]) -> bool:
-    """Whether only open positions carry more than the core itself, by single or fused aromatic bonds."""
-    room = [0] * len(match)
-    for atom in form.open_atoms.values():
-        room[atom] += 1
-    core = set(match)
-    for here, there in enumerate(match):
-        atom, own = mol.GetAtomWithIdx(there), form.bare.GetAtomWithIdx(here)
-        extra = atom.GetDegree() - own.GetDegree()
-        if not 0 <= extra <= room[here] or atom.GetFormalCharge() != own.GetFormalCharge():
-            return False
-        if extra == 0:
-            continue
-        outside = 0
-        for bond in atom.GetBonds():
-            if bond.GetOtherAtomIdx(there) in core:
-                continue
-            outside += 1
-            if bond.GetBondType() not in (Chem.BondType.SINGLE, Chem.BondType.AROMATIC):
-                return False
-        if outside != extra:
-            return False
-    return True
-
-
-def _place(form: CoreForm, match: tuple[int, ...], cuts: list[CutGroup]) -> tuple[PlacedGroup, ...] | None:
-    """Groups at the open labels of their roots; several on one atom in alphabetical order."""
-    labels: dict[int, list[str]] = {}
-    for label in form.prepared.open_labels:
-        labels.setdefault(match[form.open_atoms[label]], []).append(label)
-    placed = []
-    for root in sorted({c.root for c in cuts}):
-        here = sorted((c for c in cuts if c.root == root), key=lambda c: (c.smiles, c.atoms))
-        if len(here) > len(labels.get(root, ())):
-            return None
-        placed += [PlacedGroup(label, c.smiles, c.atoms) for label, c in zip(labels[root], here, strict=False)]
-    return tuple(sorted(placed, key=lambda g: label_order(g.label)))
-
-
-def _labeling_key(form: CoreForm, placed: Iterable[PlacedGroup]) -> tuple[Any, ...]:
-    """Lowest set of locants first, then group names in locant order."""
-    rank = {label: k for k, label in enumerate(form.prepared.open_labels)}
-    order = sorted((rank[g.label], g.smiles, g.atoms) for g in placed)
-    return tuple(r for r, _, _ in order), tuple(s for _, s, _ in order), tuple(a for _, _, a in order)
-
-
-@lru_cache(maxsize=1)
-def _acceptor() -> Mol:
-    return Chem.MolFromSmarts(_ACCEPTOR)
-
-
-def _acceptors_on(mol: Mol, ring: Iterable[int], skip: frozenset[int] = frozenset()) -> int:
-    """Number of electron acceptors bound to atoms of a ring."""
-    accepting = {m[0] for m in mol.GetSubstructMatches(_acceptor())}
-    members = set(ring)
-    near = {n.GetIdx() for k in members for n in mol.GetAtomWithIdx(k).GetNeighbors()}
-    return len((near - members - skip) & accepting)
-
-
-def _ring_key(mol: Mol, ring: list[int], core: frozenset[int]) -> tuple[int, int, int]:
-    """Rule 5: a ring with more acceptors, then with more groups, comes first."""
-    carried = sum(n.GetIdx() not in core for k in ring for n in mol.GetAtomWithIdx(k).GetNeighbors())
-    return -_acceptors_on(mol, ring), -carried, min(ring) if carried == 0 else ring[0]
-
-
 def _ring_view(mol: Mol, site: Site) -> _Placed:
-    """A site of another kind on a benzene ring: groups at 2 to 6, lowest labeling; others on its own atoms at N."""
+    """A site of another kind on a benzene ring: groups at 2 to 6, lowest labeling; others on its own atoms
+    at N."""
     best: tuple[Any, tuple[PlacedGroup, ...], frozenset[int]] | None = None
     for ring in site.rings:
         core = frozenset(ring) | frozenset(site.atoms)
@@ -297,7 +200,9 @@ def _with_other_sites(mol: Mol, sites: list[Site], placed: list[_Placed]) -> lis
             if site.reporting == view.reporting_atom:
                 continue
             holders = [g for g in view.groups if site.reporting in g.atoms]
-            holders.sort(key=lambda g: (min(near[view.reporting_atom][k] for k in g.atoms), label_order(g.label)))
+            holders.sort(
+                key=lambda g: (min(near[view.reporting_atom][k] for k in g.atoms), label_order(g.label))
+            )
             others.append((site.reporting, holders[0].label if holders else ""))
         done.append((replace(view, other_sites=tuple(sorted(others))), core, size))
     return done
@@ -309,13 +214,17 @@ def _by_rank(mol: Mol, sites: list[Site], placed: list[_Placed]) -> list[int]:
     def key(k: int) -> tuple[int, int, int, int]:
         view, core, size = placed[k]
         first = REPORTING_KINDS.index(view.kind) if view.kind in REPORTING_KINDS else len(REPORTING_KINDS)
-        acceptors = _acceptors_on(mol, (a for r in sites[k].rings for a in r if a in core)) if sites[k].rings else 0
+        acceptors = (
+            acceptors_on(mol, (a for r in sites[k].rings for a in r if a in core)) if sites[k].rings else 0
+        )
         return first, -size, -acceptors, view.reporting_atom
 
     return sorted(range(len(sites)), key=key)
 
 
-def _asked_for(order: list[int], sites: list[Site], molecule: Molecule, reporting: str | int, place: str) -> list[int]:
+def _asked_for(
+    order: list[int], sites: list[Site], molecule: Molecule, reporting: str | int, place: str
+) -> list[int]:
     """The same order with the site that the caller wants in front."""
     if isinstance(reporting, int):
         wanted = [k for k in order if molecule.input_atoms[sites[k].reporting] == reporting]
@@ -324,6 +233,8 @@ def _asked_for(order: list[int], sites: list[Site], molecule: Molecule, reportin
     if not wanted:
         there = ", ".join(f"{sites[k].kind} (atom {molecule.input_atoms[sites[k].reporting]})" for k in order)
         raise StructureError(
-            f"no ionising site '{reporting}' in {molecule.smiles}", place=place, remedy=f"it has: {there or 'none'}"
+            f"no ionising site '{reporting}' in {molecule.smiles}",
+            place=place,
+            remedy=f"it has: {there or 'none'}",
         )
     return [wanted[0], *(k for k in order if k != wanted[0])]

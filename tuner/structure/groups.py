@@ -1,7 +1,8 @@
 """How is a substituent spelled, so that a group cut from a molecule and a library row are the same string?
 
-A group is a SMILES with exactly one open valence `*`, canonical, without stereo, isotopes or atom maps, nitro and the
-like in their charge-separated form; the charge of the group itself is kept (`*C(=O)[O-]` is not `*C(=O)O`).
+A group is a SMILES with exactly one open valence `*`, canonical, without stereo, isotopes or atom maps,
+nitro and the like in their charge-separated form; the charge of the group itself is kept (`*C(=O)[O-]` is
+not `*C(=O)O`).
 """
 
 from __future__ import annotations
@@ -13,6 +14,7 @@ from rdkit import Chem
 
 from tuner.errors import StructureError
 from tuner.structure.molecule import parse
+from tuner.structure.neutral import spell_oxides
 
 Mol = Any
 
@@ -40,18 +42,20 @@ def canonical_group(smiles: str, *, place: str = "") -> str:
         return HYDROGEN_GROUP
     mol = parse(smiles, place=place)
     dummies = [a for a in mol.GetAtoms() if a.GetAtomicNum() == 0]
-    one_single_bond = len(dummies) == 1 and [b.GetBondType() for b in dummies[0].GetBonds()] == [Chem.BondType.SINGLE]
+    one_single_bond = len(dummies) == 1 and [b.GetBondType() for b in dummies[0].GetBonds()] == [
+        Chem.BondType.SINGLE
+    ]
     if not one_single_bond or len(Chem.GetMolFrags(mol)) != 1:
         raise StructureError(
-            f"'{smiles}' is no substituent", place=place, remedy="write one group with one open valence, such as *OC"
+            f"'{smiles}' is no substituent",
+            place=place,
+            remedy="write one group with one open valence, such as *OC",
         )
     return spell_group(mol)
 
 
 def spell_group(mol: Mol) -> str:
     """Canonical string of a sanitised group molecule with one dummy atom."""
-    from tuner.structure.molecule import spell_oxides
-
     work = Chem.RWMol(mol)
     for atom in work.GetAtoms():
         atom.SetIsotope(0)

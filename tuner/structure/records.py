@@ -9,8 +9,8 @@ from dataclasses import dataclass
 class Slot:
     """One substitutable place of a prepared core, open or fixed by the core itself.
 
-    `neighbours` are the labels of slots on adjacent ring atoms (what flanks what). `fixed` is the canonical `*...` SMILES of the group
-    that the core carries there, "" where the position is open.
+    `neighbours` are the labels of slots on adjacent ring atoms (what flanks what). `fixed` is the canonical
+    `*...` SMILES of the group that the core carries there, "" where the position is open.
     """
 
     label: str
@@ -27,9 +27,10 @@ class Slot:
 class PreparedCore:
     """A core with its positions worked out of the structure.
 
-    `scaffold` is what the acidity model has a parent for: "phenol" or "aniline" where the reporting group sits on a lone benzene ring (whatever
-    the core carries there is then a fixed slot), otherwise the core's own name. `open_labels` gives the column order of every index array.
-    `symmetry` holds permutations of the open positions (as indices, identity first) that give the same molecule.
+    `scaffold` is what the acidity model has a parent for: "phenol" or "aniline" where the reporting group
+    sits on a lone benzene ring (whatever the core carries there is then a fixed slot), otherwise the core's
+    own name. `open_labels` gives the column order of every index array. `symmetry` holds permutations of
+    the open positions (as indices, identity first) that give the same molecule.
     """
 
     name: str
@@ -51,7 +52,8 @@ class PreparedCore:
 
 @dataclass(frozen=True, slots=True)
 class PlacedGroup:
-    """A group found at a position of a core: canonical `*...` SMILES and the molecule's atoms that belong to it."""
+    """A group found at a position of a core: canonical `*...` SMILES and the molecule's atoms that belong
+    to it."""
 
     label: str
     smiles: str
@@ -62,16 +64,18 @@ class PlacedGroup:
 class SiteView:
     """One ionising site of a molecule, seen as a core with groups on it.
 
-    `groups` stand on the open positions of `core`; hydrogen is left out. Where that core lies on a lone benzene ring, `scaffold` is "phenol" or
-    "aniline" and `scaffold_groups` is the same site seen as that bare ring: 2 to 6 (and N, N'), what the core carries itself included. For
-    other cores `scaffold` is the core's own name and both tuples are the same.
+    `groups` stand on the open positions of `core`; hydrogen is left out. Where that core lies on a lone
+    benzene ring, `scaffold` is "phenol" or "aniline" and `scaffold_groups` is the same site seen as that
+    bare ring: 2 to 6 (and N, N'), what the core carries itself included. For other cores `scaffold` is the
+    core's own name and both tuples are the same. `other_sites` pairs the reporting atom of every other site
+    with the label of the group in `groups` that holds it, "" where the core itself does.
     """
 
     kind: str  # a series name, or "aliphatic_amine", "aliphatic_acid", "sulfonic_acid", "thiol" ...
     reporting_atom: int
     core: str  # name of the matched core, "" for sites that are no phenol or aniline core
     groups: tuple[PlacedGroup, ...]
-    other_sites: tuple[tuple[int, str], ...]  # (reporting atom of another site, label of the group in `groups` that holds it; "": the core)
+    other_sites: tuple[tuple[int, str], ...]
     note: str = ""
     scaffold: str = ""  # "" for sites that are no phenol or aniline
     scaffold_groups: tuple[PlacedGroup, ...] = ()

@@ -1,7 +1,7 @@
 """Which cores can a molecule be seen as, and what does every phenol or aniline fall back on?
 
-`SCAFFOLDS` are the two lone benzene rings with everything open; a molecule whose reporting ring no larger core fits is
-seen as one of them. `index_cores` prepares a library of cores once for all molecules.
+`SCAFFOLDS` are the two lone benzene rings with everything open; a molecule whose reporting ring no larger
+core fits is seen as one of them. `index_cores` prepares a library of cores once for all molecules.
 """
 
 from __future__ import annotations
@@ -17,9 +17,7 @@ _RING = "c([*:2])c([*:3])c([*:4])c([*:5])c1[*:6]"
 
 SCAFFOLD_CORES: Mapping[str, Core] = {
     "phenol": Core("phenol", "phenol", f"Oc1{_RING}", "phenol"),
-    "aniline": Core(
-        "aniline", "aniline", f"[*:7]N([*:8])c1{_RING}", "anilinium", labels={7: "N", 8: "N'"}
-    ),
+    "aniline": Core("aniline", "aniline", f"[*:7]N([*:8])c1{_RING}", "anilinium", labels={7: "N", 8: "N'"}),
 }
 """The fall-back cores; slots 2 to 6 and, on the amine, N and N'."""
 
@@ -28,8 +26,8 @@ SCAFFOLD_CORES: Mapping[str, Core] = {
 class CoreIndex:
     """Cores made ready for matching.
 
-    `prepared` holds the library's cores in the library's order; `scaffold(name)` the fall-back "phenol" or "aniline"
-    with all positions open, which a `SiteView` with that core name refers to.
+    `prepared` holds the library's cores in the library's order; `scaffold(name)` the fall-back "phenol" or
+    "aniline" with all positions open, which a `SiteView` with that core name refers to.
     """
 
     prepared: Mapping[str, PreparedCore]

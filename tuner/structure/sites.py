@@ -1,8 +1,9 @@
 """Which groups of a molecule take up or give off a proton between pH 0 and 14?
 
-One row per kind: name, pattern, and what the pattern's atoms are. Atom map 1 is the reporting atom (the one that
-carries the proton of the acid form), map 2 the carrier (the atom that the group hangs on). Rows are tried in order; an
-atom that an earlier row claimed is not claimed again. Patterns are our own; that these groups ionise is textbook.
+One row per kind: name, pattern, and what the pattern's atoms are. Atom map 1 is the reporting atom (the one
+that carries the proton of the acid form), map 2 the carrier (the atom that the group hangs on). Rows are
+tried in order; an atom that an earlier row claimed is not claimed again. Patterns are our own; that these
+groups ionise is textbook.
 """
 
 from __future__ import annotations
@@ -14,7 +15,9 @@ from rdkit import Chem
 
 Mol = Any
 
-_PLAIN_N = "NX3;+0;!$(N-[#6]=[O,S,N,P]);!$(N-C#N);!$(N-[!#6;!#1]);!$(N-[#6]=[#6]-[#6]=[O,N]);!$(N-[#6]=[#6]-[#6]#N)"
+_PLAIN_N = (
+    "NX3;+0;!$(N-[#6]=[O,S,N,P]);!$(N-C#N);!$(N-[!#6;!#1]);!$(N-[#6]=[#6]-[#6]=[O,N]);!$(N-[#6]=[#6]-[#6]#N)"
+)
 
 SITE_PATTERNS: tuple[tuple[str, str], ...] = (
     ("sulfonic_acid", "[OX2H1:1]S(=O)(=O)[#6,#7,#8:2]"),
@@ -55,20 +58,26 @@ RING_KINDS = {
 }
 """What a site is called where its carrier is an atom of a benzene ring."""
 
-PLAIN_KINDS = {"carboxylic_acid": "aliphatic_acid", "phenol": "hydroxyheteroarene", "aniline": "aminoheteroarene"}
+PLAIN_KINDS = {
+    "carboxylic_acid": "aliphatic_acid",
+    "phenol": "hydroxyheteroarene",
+    "aniline": "aminoheteroarene",
+}
 """What a site is called where it is not (a phenol or aniline pattern on a heteroaromatic ring)."""
 
 
 HETERORINGS = ("tetrazole", "pyridine", "azole")
-"""Kinds whose reporting atom is part of an aromatic ring; seen as that ring, the reporting atom is number 1."""
+"""Kinds whose reporting atom is part of an aromatic ring; seen as that ring, the reporting atom is number
+1."""
 
 
 @dataclass(frozen=True, slots=True)
 class Site:
     """One ionising site as found, before it is seen as a core.
 
-    `atoms` are all atoms of the group itself (without the carrier). `rings` are the benzene rings that the site sits
-    on, each listed from the carrier on; more than one for diarylamines. For a ring nitrogen it is its own ring.
+    `atoms` are all atoms of the group itself (without the carrier). `rings` are the benzene rings that the
+    site sits on, each listed from the carrier on; more than one for diarylamines. For a ring nitrogen it is
+    its own ring.
     """
 
     kind: str

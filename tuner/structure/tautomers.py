@@ -1,8 +1,8 @@
 """In which tautomer is a dye treated, and what must be said about it?
 
-The acidity model speaks of phenols. A quinone hydrazone is the same compound as an arylazo phenol, a quinone oxime the
-same as a nitrosophenol; where a structure is drawn that way it is redrawn as the phenol, with a note. Textbook
-equilibria, common practice, no single source.
+The acidity model speaks of phenols. A quinone hydrazone is the same compound as an arylazo phenol, a
+quinone oxime the same as a nitrosophenol; where a structure is drawn that way it is redrawn as the phenol,
+with a note. Textbook equilibria, common practice, no single source.
 """
 
 from __future__ import annotations
@@ -22,11 +22,20 @@ _QUINOID = (
 )
 
 _PARTNERS = (
-    ("[OX2H1]-c:c-[NX2]=[NX2]-[#6]", "ortho-arylazo phenol or naphthol: exists in part as the quinone hydrazone"),
-    ("[OX2H1]-c1:c:c:c(-[NX2]=[NX2]-[#6]):c2:c:c:c:c:c:1:2", "4-arylazo-1-naphthol: exists in part as the quinone hydrazone"),
+    (
+        "[OX2H1]-c:c-[NX2]=[NX2]-[#6]",
+        "ortho-arylazo phenol or naphthol: exists in part as the quinone hydrazone",
+    ),
+    (
+        "[OX2H1]-c1:c:c:c(-[NX2]=[NX2]-[#6]):c2:c:c:c:c:c:1:2",
+        "4-arylazo-1-naphthol: exists in part as the quinone hydrazone",
+    ),
     ("[OX2H1]-c:c-[NX2]=[OX1]", "ortho-nitrosophenol or -naphthol: exists in part as the quinone oxime"),
     ("[OX2H1]-c1:c:c:c(-[NX2]=[OX1]):c:c:1", "para-nitrosophenol: exists in part as the quinone oxime"),
-    ("[NX3;+0;!$(N-C=O);!$(N-S)]-c1:c:c:c(-[NX2]=[NX2]-[#6]):c:c:1", "aminoazo dye: its acid form is in part protonated at the azo nitrogen"),
+    (
+        "[NX3;+0;!$(N-C=O);!$(N-S)]-c1:c:c:c(-[NX2]=[NX2]-[#6]):c:c:1",
+        "aminoazo dye: its acid form is in part protonated at the azo nitrogen",
+    ),
 )
 
 
@@ -35,7 +44,9 @@ def _six_ring(mol: Mol, first: int, last: int) -> tuple[int, ...] | None:
     for ring in mol.GetRingInfo().AtomRings():
         if len(ring) == 6 and first in ring and last in ring:
             atoms = [mol.GetAtomWithIdx(k) for k in ring]
-            if all(a.GetAtomicNum() == 6 and a.GetHybridization() == Chem.HybridizationType.SP2 for a in atoms):
+            if all(
+                a.GetAtomicNum() == 6 and a.GetHybridization() == Chem.HybridizationType.SP2 for a in atoms
+            ):
                 return tuple(ring)
     return None
 

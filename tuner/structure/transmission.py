@@ -1,7 +1,7 @@
 """How much of a remote group's effect reaches the reporting group, where nobody has measured it?
 
-Defaults for `Position.transmission` (tau) of positions that are not on the reporting ring; a core's author overrides
-them with `given_positions`, and measurements on a core refit them.
+Defaults for `Position.transmission` (tau) of positions that are not on the reporting ring; a core's author
+overrides them with `given_positions`, and measurements on a core refit them.
 
 A path from the position to the reporting ring is cut into links; tau is the product of their factors.
 
@@ -30,6 +30,7 @@ Estimates are common practice, no source; their errors (`*_SD`) are wide on purp
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from typing import Any
 
 from rdkit import Chem
@@ -53,7 +54,8 @@ CARBONYL = 0.85
 
 
 def ring_systems(mol: Mol) -> dict[int, int]:
-    """Atom -> number of its aromatic ring system (rings that share atoms count as one); chain atoms are absent."""
+    """Atom -> number of its aromatic ring system (rings that share atoms count as one); chain atoms are
+    absent."""
     systems: list[set[int]] = []
     for ring in mol.GetRingInfo().AtomRings():
         if not all(mol.GetAtomWithIdx(k).GetIsAromatic() for k in ring):
@@ -90,8 +92,10 @@ def _chain_factor(mol: Mol, chain: list[int]) -> float:
         elif after is not None and kind == Chem.BondType.TRIPLE:
             factor *= TRIPLE
             k += 2
-        elif after is not None and {atom.GetSymbol(), after.GetSymbol()} == {"C", "N"} and (
-            _is_carbonyl(atom) or _is_carbonyl(after)
+        elif (
+            after is not None
+            and {atom.GetSymbol(), after.GetSymbol()} == {"C", "N"}
+            and (_is_carbonyl(atom) or _is_carbonyl(after))
         ):
             factor *= AMIDE
             k += 2
@@ -102,9 +106,9 @@ def _chain_factor(mol: Mol, chain: list[int]) -> float:
     return factor
 
 
-def _distance_parity(mol: Mol, first: int, last: int) -> int:
-    """Number of bonds between two atoms of one ring system, modulo 2."""
-    return (len(Chem.GetShortestPath(mol, first, last)) - 1) % 2 if first != last else 0
+def _odd_distance(mol: Mol, first: int, last: int) -> bool:
+    """Whether two atoms are an odd number of bonds apart: then they conjugate."""
+    return first != last and len(Chem.GetShortestPath(mol, first, last)) % 2 == 0
 
 
 def remote_transmission(
@@ -119,36 +123,44 @@ def remote_transmission(
     reporting, ipso : the reporting atom and the ring atom that carries it
     ring : atoms of the reporting ring
 
-    The column is "para" where the position conjugates towards the bridge (odd number of bonds inside its own ring
-    system), "meta" otherwise.
+    The column is "para" where the position conjugates towards the bridge (odd number of bonds inside its
+    own ring system), "meta" otherwise.
     """
     systems = ring_systems(mol)
-    path = list(Chem.GetShortestPath(mol, place, reporting if reporting != place else ipso))
     home = systems.get(ipso)
-    tau, sd, column = 1.0, BRIDGE_SD, "meta"
+    path = list(Chem.GetShortestPath(mol, place, reporting if reporting != place else ipso))
+    on_chain = systems.get(place) is None
+    tau = CHAIN_START if on_chain else 1.0
+    sd = FUSED_SD if on_chain else BRIDGE_SD
+    column = "meta"
     k = 0
-    if systems.get(place) is None:
-        tau = CHAIN_START
-        sd = FUSED_SD
     while k < len(path) and path[k] not in ring and path[k] != reporting:
+        last = _segment_end(systems, path, k, ring)
         system = systems.get(path[k])
-        last = k
-        while last + 1 < len(path) and systems.get(path[last + 1]) == system and path[last + 1] not in ring:
-            last += 1
         if system is None:
-            tau *= _chain_factor(mol, path[k : last + 1] if k or systems.get(place) is not None else path[1 : last + 1])
+            tau *= _chain_factor(mol, path[k + (on_chain and k == 0) : last + 1])
         elif system == home:
-            odd = _distance_parity(mol, path[k], ipso) == 1
+            odd = _odd_distance(mol, path[k], ipso)
             tau *= FUSED_ODD if odd else FUSED_EVEN
-            sd = max(sd, FUSED_SD)
-            column = ("para" if odd else "meta") if k == 0 else column
+            sd = FUSED_SD
+            column = "para" if odd and k == 0 else column
         else:
-            leaves_to_reporting = last + 1 < len(path) and path[last + 1] == reporting
-            tau *= N_ARYL if leaves_to_reporting else NEXT_RING
-            if k == 0:
-                column = "para" if _distance_parity(mol, path[0], path[last]) else "meta"
+            tau *= N_ARYL if path[last + 1] == reporting else NEXT_RING
+            column = "para" if k == 0 and _odd_distance(mol, path[0], path[last]) else column
         k = last + 1
-    if k and k < len(path) and path[k] in ring and systems.get(path[k - 1]) != home:
-        if len(Chem.GetShortestPath(mol, path[k], ipso)) == 3:
-            tau *= META_BRIDGE
+    bridged = 0 < k < len(path) and systems.get(path[k - 1]) != home
+    if bridged and path[k] in ring and len(Chem.GetShortestPath(mol, path[k], ipso)) == 3:
+        tau *= META_BRIDGE
     return round(tau, 3), sd, column
+
+
+def _segment_end(systems: Mapping[int, int], path: list[int], k: int, ring: tuple[int, ...]) -> int:
+    """Last index of the stretch of a path that lies in one ring system (or on one chain) from `k` on."""
+    last = k
+    while (
+        last + 1 < len(path)
+        and systems.get(path[last + 1]) == systems.get(path[k])
+        and path[last + 1] not in ring
+    ):
+        last += 1
+    return last
