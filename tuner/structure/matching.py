@@ -6,15 +6,18 @@ it on, the lowest labeling is taken (see `dissect`, rules 4 and 5).
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from functools import lru_cache
 from typing import Any
 
 from rdkit import Chem
 
-from tuner.structure.cores import CoreForm
+from tuner.library.records import Core
+from tuner.structure.cores import CoreForm, form_of
 from tuner.structure.cutting import CutGroup, cut_groups
+from tuner.structure.groups import HYDROGEN_GROUP, canonical_group
+from tuner.structure.molecule import flat
 from tuner.structure.positions import label_order
 from tuner.structure.records import PlacedGroup
 
@@ -53,6 +56,32 @@ def best_labeling(mol: Mol, reporting: int, form: CoreForm) -> Labeling | None:
             here = {match[k] for k in form.ring} | {reporting}
             opened = [c.root in here for c in cuts[core] if c.opened]
             best = (key, Labeling(placed, core, len(opened), sum(opened)))
+    return best[1] if best is not None else None
+
+
+def core_match(mol: Mol, core: Core, groups: Mapping[str, str] | None = None) -> tuple[int, ...] | None:
+    """For each atom of the bare core its atom in a molecule; None where the core does not fit.
+
+    Parameters
+    ----------
+    groups : mapping label -> `*...`
+        The labeling that is wanted; without it, or where no match has it, the lowest labeling is taken.
+    """
+    form = form_of(core)
+    plain = flat(mol)
+    wanted = {k: canonical_group(g) for k, g in (groups or {}).items()}
+    wanted = {k: g for k, g in wanted.items() if g != HYDROGEN_GROUP}
+    best: tuple[Any, tuple[int, ...]] | None = None
+    for match in plain.GetSubstructMatches(form.bare, uniquify=False, maxMatches=MAX_CORE_MATCHES):
+        if not _fits(plain, form, match):
+            continue
+        placed = _place(form, match, cut_groups(plain, frozenset(match)))
+        if placed is None:
+            continue
+        differs = groups is not None and {g.label: g.smiles for g in placed} != wanted
+        key = (differs, _labeling_key(form, placed), tuple(match))
+        if best is None or key < best[0]:
+            best = (key, tuple(match))
     return best[1] if best is not None else None
 
 
