@@ -16,7 +16,7 @@ import numpy as np
 from tuner.acidity.tables import FloatArray, IntArray
 from tuner.search.evaluate import standard_error
 from tuner.search.probability import Interval, hit_probability
-from tuner.search.tables import PKA_UNIT, FixedSum, Goal, Int32, Int64, SpaceTables
+from tuner.search.tables import PKA_UNIT, FixedSum, Goal, Int32, Int64, SpaceTables, in_ph
 
 LARGEST_BLOCK = 2**20
 """Analogs per block at most: 4 MiB per whole-number array, a few of them stay in the cache of one core."""
@@ -135,14 +135,14 @@ class BlockPlan:
         pka = self.pka.values(prefix)
         sd = standard_error(self.variance.values(prefix), self.tables.variance.unit)
         whole_offset = np.abs(pka - np.int32(goal.target))
-        values = pka * PKA_UNIT
+        values = in_ph(pka)
         low, high = goal.target_ph - goal.tolerance, goal.target_ph + goal.tolerance
         intervals = [Interval(values, sd, low, high)]
         for n, condition in enumerate(self.tables.conditions):
             there = self.conditions[n].values(prefix)
             other = standard_error(self.condition_variances[n].values(prefix), condition.variance.unit)
             intervals.append(
-                Interval(there * PKA_UNIT, other, condition.low * PKA_UNIT, condition.high * PKA_UNIT)
+                Interval(in_ph(there), other, condition.low * PKA_UNIT, condition.high * PKA_UNIT)
             )
             if condition.centre is not None:
                 whole_offset = np.maximum(whole_offset, np.abs(there - np.int32(condition.centre)))
@@ -151,6 +151,6 @@ class BlockPlan:
             sd=sd,
             hit=hit_probability(intervals),
             steps=self.steps(prefix),
-            mass=self.mass.values(prefix) * self.tables.mass.unit,
-            offset=whole_offset * PKA_UNIT,
+            mass=np.asarray(self.mass.values(prefix) * self.tables.mass.unit, dtype=np.float64),
+            offset=in_ph(whole_offset),
         )

@@ -4,7 +4,7 @@ completion.
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -14,94 +14,16 @@ from numpy.typing import NDArray
 from tuner.acidity.tables import FloatArray, IntArray
 from tuner.search.evaluate import standard_error
 from tuner.search.probability import hit_bound
+from tuner.search.space import CountLimit
+from tuner.search.spans import SumSpan, find_budget
 from tuner.search.standing import Standing
 from tuner.search.symmetry import is_canonical
-from tuner.search.tables import PKA_UNIT, FixedSum, Goal, Int32, Int64, SpaceTables
+from tuner.search.tables import FixedSum, Goal, Int64, SpaceTables, in_ph
 
 Mask = NDArray[np.bool_]
 
 SCORE_SLACK = 1e-9
-"""Scores closer than this are not told apart when a bound decides, so that rounding can never lose an
-analog.
-"""
-
-ROWS_AT_ONCE = 4096
-
-
-class SumRange:
-    """Lowest and highest value of a `FixedSum` once the first `depth` choices are fixed.
-
-    For each free position the best choice is taken given the fixed ones; pair terms among free positions
-    enter by the best partner of each choice. The range therefore holds every completion, and is exact where
-    free positions do not couple.
-    """
-
-    def __init__(self, table: FixedSum, depth: int) -> None:
-        self.table = table
-        self.depth = depth
-        free = table.unary[depth:]
-        self._starts = np.cumsum([0, *(len(t) for t in free)])[:-1].astype(np.intp)
-        self._low = (
-            np.concatenate([t.astype(np.int64) for t in free]) if free else np.zeros(0, dtype=np.int64)
-        )
-        self._high = self._low.copy()
-        for (p, _), pair in table.pair.items():
-            if p >= depth:
-                at = slice(self._starts[p - depth], self._starts[p - depth] + len(table.unary[p]))
-                self._low[at] += pair.min(axis=1)
-                self._high[at] += pair.max(axis=1)
-        self._cross = {p: self._cross_table(p) for p in range(depth) if self._couples(p)}
-
-    def _couples(self, p: int) -> bool:
-        return any(a == p and b >= self.depth for a, b in self.table.pair)
-
-    def _cross_table(self, p: int) -> Int32:
-        """Pair terms of each choice at fixed position p with every choice at the free positions, side by
-        side.
-        """
-        parts = []
-        for q in range(self.depth, len(self.table.unary)):
-            width = len(self.table.unary[q])
-            empty = np.zeros((len(self.table.unary[p]), width), dtype=np.int32)
-            parts.append(self.table.pair.get((p, q), empty))
-        return np.concatenate(parts, axis=1)
-
-    def fixed(self, index: IntArray) -> Int64:
-        """The part that is fixed, shape (n, depth) -> (n,)."""
-        total = np.full(len(index), self.table.base, dtype=np.int64)
-        for p in range(self.depth):
-            total += self.table.unary[p][index[:, p]]
-        for (p, q), pair in self.table.pair.items():
-            if q < self.depth:
-                total += pair[index[:, p], index[:, q]]
-        return total
-
-    def range(self, index: IntArray) -> tuple[Int64, Int64]:
-        """Lowest and highest total of every row, shape (n, depth) -> two of (n,)."""
-        fixed = self.fixed(index)
-        if not len(self._starts):
-            return fixed, fixed.copy()
-        if not self._cross:
-            low = np.minimum.reduceat(self._low, self._starts).sum()
-            high = np.maximum.reduceat(self._high, self._starts).sum()
-            return fixed + low, fixed + high
-        lows, highs = np.empty_like(fixed), np.empty_like(fixed)
-        for at in _slices(len(index)):
-            shift = np.zeros((len(index[at]), len(self._low)), dtype=np.int32)
-            for p, table in self._cross.items():
-                shift += table[index[at, p]]
-            lows[at] = np.minimum.reduceat(shift + self._low.astype(np.int32), self._starts, axis=1).sum(
-                axis=1
-            )
-            highs[at] = np.maximum.reduceat(shift + self._high.astype(np.int32), self._starts, axis=1).sum(
-                axis=1
-            )
-        return fixed + lows, fixed + highs
-
-
-def _slices(n: int) -> Iterator[slice]:
-    for start in range(0, n, ROWS_AT_ONCE):
-        yield slice(start, min(n, start + ROWS_AT_ONCE))
+"""Scores closer than this are not told apart when a bound decides: rounding can never lose an analog."""
 
 
 class LeastSteps:
@@ -122,11 +44,18 @@ class LeastSteps:
         classes = tuple(self._class_of[p][index[:, p]] for p in range(depth))
         return np.asarray(self._minima[depth][classes], dtype=np.int64)
 
+    def children(self, index: IntArray) -> Int64:
+        """The same with each choice at the next position, shape (n, depth) -> (n, choices)."""
+        depth = index.shape[1]
+        classes = tuple(self._class_of[p][index[:, p]][:, None] for p in range(depth))
+        found = self._minima[depth + 1][(*classes, self._class_of[depth][None, :])]
+        return np.asarray(found, dtype=np.int64)
+
 
 @dataclass(frozen=True)
 class Bounds:
-    """Bounds of prefixes, arrays of shape (n,). `offset` in whole numbers; `possible` is False where no
-    completion is canonical and within the limits.
+    """Bounds of prefixes, arrays of one shape. `offset` in whole numbers; `possible` is False where no
+    completion is within the limits.
     """
 
     possible: Mask
@@ -140,62 +69,108 @@ class Bounds:
 
     def useful(self, standing: Standing) -> Mask:
         """True where a completion could still enter the front or the best N."""
-        ceiling = standing.offset_ceiling(self.steps, self.mass)
-        for_front = self.offset // standing.resolution < ceiling
-        return self.possible & (for_front | (self.score + SCORE_SLACK >= standing.score_floor()))
+        good = self.possible & (self.score + SCORE_SLACK >= standing.score_floor())
+        other = self.possible & ~good
+        if other.any():
+            ceiling = standing.offset_ceiling(self.steps[other], self.mass[other])
+            good[other] = self.offset[other] // standing.resolution < ceiling
+        return good
+
+    def row(self, row: int) -> Bounds:
+        """The bounds of one prefix."""
+        at = slice(row, row + 1)
+        return Bounds(*(getattr(self, name)[at] for name in Bounds.__dataclass_fields__))
 
 
 class SpaceBounds:
-    """Bounds for prefixes of every depth of one core's space."""
+    """Bounds for prefixes of every depth of one core's space, and for all their children at once."""
 
     def __init__(self, tables: SpaceTables, goal: Goal) -> None:
         self.tables = tables
         self.goal = goal
-        self._ranges: dict[tuple[str, int], SumRange] = {}
+        self._budget = find_budget(tables.limits)
+        self._spans: dict[tuple[str, int], SumSpan] = {}
 
     @cached_property
     def _least_steps(self) -> LeastSteps:
         return LeastSteps(self.tables)
 
-    def _range(self, name: str, table: FixedSum, index: IntArray) -> tuple[Int64, Int64]:
-        key = (name, index.shape[1])
-        if key not in self._ranges:
-            self._ranges[key] = SumRange(table, index.shape[1])
-        return self._ranges[key].range(index)
+    def _span(self, name: str, table: FixedSum, depth: int) -> SumSpan:
+        key = (name, depth)
+        if key not in self._spans:
+            self._spans[key] = SumSpan(table, depth, self._budget)
+        return self._spans[key]
 
     def at(self, index: IntArray) -> Bounds:
-        """Bounds of the prefixes in `index`, shape (n, depth)."""
+        """Bounds of the prefixes in `index`, shape (n, depth); non-canonical prefixes are not possible."""
+        depth = index.shape[1]
+        left = None if self._budget is None else self._budget.left(index)
+
+        def span(name: str, table: FixedSum) -> tuple[Int64, Int64]:
+            return self._span(name, table, depth).range(index, left)
+
+        possible = is_canonical(index, self.tables.symmetry)
+        for limit in self.tables.limits:
+            possible &= _limit_possible(limit, index)
+        return self._bounds(span, possible, self._least_steps.at(index))
+
+    def children(self, index: IntArray) -> Bounds:
+        """Bounds of every prefix with every choice at the next position, arrays of shape (n, choices)."""
+        depth = index.shape[1]
+        left = None
+        if self._budget is not None:
+            left = self._budget.left(index)[:, None] - self._budget.weights[depth]
+
+        def span(name: str, table: FixedSum) -> tuple[Int64, Int64]:
+            return self._span(name, table, depth).children(index, left)
+
+        possible = np.ones((len(index), self.tables.shape[depth]), dtype=np.bool_)
+        for limit in self.tables.limits:
+            possible &= _limit_possible_children(limit, index)
+        return self._bounds(span, possible, self._least_steps.children(index))
+
+    def _bounds(self, span: Span, possible: Mask, steps: Int64) -> Bounds:
+        """Put the spans of all quantities together."""
         tables, goal = self.tables, self.goal
-        offset = _distance(self._range("pka", tables.pka, index), goal.target)
-        main = offset
-        possible = is_canonical(index, tables.symmetry) & self._limits_possible(index)
+        main = offset = _distance(span("pka", tables.pka), goal.target)
         for n, condition in enumerate(tables.conditions):
-            low, high = self._range(f"condition {n}", condition.pka, index)
+            low, high = span(f"condition {n}", condition.pka)
             possible &= (high >= condition.low) & (low <= condition.high)
             if condition.centre is not None:
                 offset = np.maximum(offset, _distance((low, high), condition.centre))
-        steps = self._least_steps.at(index)
-        mass = self._range("mass", tables.mass, index)[0]
-        flags = self._range("flags", tables.flags, index)[0]
-        variances = self._range("variance", tables.variance, index)
-        sd_low, sd_high = (standard_error(v, tables.variance.unit) for v in variances)
+        mass, flags = span("mass", tables.mass)[0], span("flags", tables.flags)[0]
+        sd_low, sd_high = (standard_error(v, tables.variance.unit) for v in span("variance", tables.variance))
         possible &= (steps <= goal.max_steps) & (mass <= goal.mass_ceiling) & (sd_low <= goal.max_pka_sd)
         costs = goal.costs(steps, mass, flags)
-        best_hit = hit_bound(main * PKA_UNIT, goal.tolerance, sd_low, sd_high)
+        best_hit = hit_bound(in_ph(main), goal.tolerance, sd_low, sd_high)
         return Bounds(possible, offset, steps, mass, sd_low, sd_high, costs, best_hit - costs)
 
-    def _limits_possible(self, index: IntArray) -> Mask:
-        """False where a counting limit is broken whatever follows."""
-        depth = index.shape[1]
-        good = np.ones(len(index), dtype=np.bool_)
-        for limit in self.tables.limits:
-            total = np.zeros(len(index), dtype=np.int64)
-            for p in range(depth):
-                total += limit.weights[p][index[:, p]]
-            least = sum(int(w.min()) for w in limit.weights[depth:])
-            most = sum(int(w.max()) for w in limit.weights[depth:])
-            good &= (total + most >= limit.low) & (total + least <= limit.high)
-        return good
+
+Span = Callable[[str, FixedSum], tuple[Int64, Int64]]
+
+
+def _limit_possible(limit: CountLimit, index: IntArray) -> Mask:
+    """False where a counting limit is broken whatever follows, shape (n, depth) -> (n,)."""
+    depth = index.shape[1]
+    total = np.zeros(len(index), dtype=np.int64)
+    for p in range(depth):
+        total += limit.weights[p][index[:, p]]
+    return _reachable(limit, total, depth)
+
+
+def _limit_possible_children(limit: CountLimit, index: IntArray) -> Mask:
+    """The same with each choice at the next position, shape (n, depth) -> (n, choices)."""
+    depth = index.shape[1]
+    total = np.zeros(len(index), dtype=np.int64)
+    for p in range(depth):
+        total += limit.weights[p][index[:, p]]
+    return _reachable(limit, total[:, None] + limit.weights[depth], depth + 1)
+
+
+def _reachable(limit: CountLimit, total: Int64, depth: int) -> Mask:
+    least = sum(int(w.min()) for w in limit.weights[depth:])
+    most = sum(int(w.max()) for w in limit.weights[depth:])
+    return np.asarray((total + most >= limit.low) & (total + least <= limit.high))
 
 
 def _distance(span: tuple[Int64, Int64], centre: int) -> Int64:

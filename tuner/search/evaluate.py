@@ -10,7 +10,7 @@ from tuner.search.counting import within_limits
 from tuner.search.probability import LEAST_SD, Interval, hit_probability
 from tuner.search.rows import Analogs
 from tuner.search.symmetry import is_canonical
-from tuner.search.tables import PKA_UNIT, Condition, Goal, Int64, SpaceTables
+from tuner.search.tables import PKA_UNIT, Condition, Goal, Int64, SpaceTables, in_ph
 from tuner.synthesis.records import NO_ROUTE
 
 Mask = NDArray[np.bool_]
@@ -35,9 +35,7 @@ def evaluate_rows(tables: SpaceTables, goal: Goal, index: IntArray) -> Analogs:
     pka = tables.pka.at(index)
     sd = standard_error(tables.variance.at(index), tables.variance.unit)
     offset = np.abs(pka - goal.target)
-    intervals = [
-        Interval(pka * PKA_UNIT, sd, goal.target_ph - goal.tolerance, goal.target_ph + goal.tolerance)
-    ]
+    intervals = [Interval(in_ph(pka), sd, goal.target_ph - goal.tolerance, goal.target_ph + goal.tolerance)]
     for condition in tables.conditions:
         interval, there = _interval(condition, index)
         intervals.append(interval)
@@ -69,7 +67,7 @@ def _interval(condition: Condition, index: IntArray) -> tuple[Interval, Int64]:
     """The interval of a further target for these analogs, and their whole-number pKa' there."""
     pka = condition.pka.at(index)
     sd = standard_error(condition.variance.at(index), condition.variance.unit)
-    return Interval(pka * PKA_UNIT, sd, condition.low * PKA_UNIT, condition.high * PKA_UNIT), pka
+    return Interval(in_ph(pka), sd, condition.low * PKA_UNIT, condition.high * PKA_UNIT), pka
 
 
 def keeps_conditions(tables: SpaceTables, index: IntArray) -> Mask:

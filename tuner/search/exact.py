@@ -27,7 +27,7 @@ from tuner.search.found import Certificate, Found
 from tuner.search.probability import farthest_useful_offset, hit_bound
 from tuner.search.result import Progress
 from tuner.search.standing import NEVER, Standing
-from tuner.search.tables import HIGHEST_WHOLE, MASS_UNIT, PKA_UNIT, Goal, Int64, SpaceTables
+from tuner.search.tables import HIGHEST_WHOLE, MASS_UNIT, PKA_UNIT, Goal, Int64, SpaceTables, in_ph
 
 CHUNKS_WANTED = 256
 """Work is handed out in about so many chunks: fine enough for progress and even load, coarse enough to cost
@@ -102,7 +102,7 @@ class ChunkSearcher:
         for row in np.flatnonzero(bounds.useful(standing)):
             if stop():
                 break
-            visited += self._block(plan, prefixes[row], _row(bounds, int(row)), standing)
+            visited += self._block(plan, prefixes[row], bounds.row(int(row)), standing)
         return visited
 
     def _block(self, plan: BlockPlan, prefix: Int64, bound: Bounds, standing: Standing) -> int:
@@ -113,12 +113,12 @@ class ChunkSearcher:
             return 0
         farthest = self._farthest(bound, standing)
         offset = self._offsets(plan, prefix)
-        inside = np.flatnonzero(offset.ravel() <= farthest)
+        inside: IntArray = np.flatnonzero(offset.ravel() <= farthest)
         if len(inside):
             inside = self._worth(
                 plan, prefix, inside, offset.ravel()[inside].astype(np.int64), bound, standing
             )
-            rows = plan.rows(prefix, inside)
+            rows = plan.rows(prefix.tolist(), inside)
             standing.offer(evaluate_admitted(plan.tables, self.search.goal, rows))
         return plan.inner_size
 
@@ -162,16 +162,10 @@ class ChunkSearcher:
         inside, offset, steps, mass = inside[good], offset[good], steps[good], mass[good]
         dearer = goal.step_costs * (steps - bound.steps[0])
         dearer += goal.hundred_g_mol_costs * MASS_UNIT / 100.0 * (mass - bound.mass[0])
-        best_hit = hit_bound(offset * PKA_UNIT, goal.tolerance, bound.sd_low, bound.sd_high)
+        best_hit = hit_bound(in_ph(offset), goal.tolerance, bound.sd_low, bound.sd_high)
         good = best_hit - bound.costs[0] - dearer + SCORE_SLACK >= standing.score_floor()
         good |= offset // standing.resolution < standing.offset_ceiling(steps, mass)
-        return inside[good]
-
-
-def _row(bounds: Bounds, row: int) -> Bounds:
-    """The bounds of one prefix."""
-    at = slice(row, row + 1)
-    return Bounds(*(getattr(bounds, name)[at] for name in Bounds.__dataclass_fields__))
+        return np.asarray(inside[good])
 
 
 def search_exact(

@@ -35,6 +35,11 @@ HIGHEST_WHOLE = 2**30
 """Largest sum of absolute values a table may reach, so that 32-bit sums and differences never overflow."""
 
 
+def in_ph(whole: NDArray[np.integer]) -> FloatArray:
+    """pKa units from whole numbers of `PKA_UNIT`."""
+    return np.asarray(whole * PKA_UNIT, dtype=np.float64)
+
+
 @dataclass(frozen=True)
 class FixedSum:
     """A `PairwiseSum` in whole numbers: value = unit * (base + sum of look-ups)."""

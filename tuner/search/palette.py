@@ -1,0 +1,92 @@
+"""Which groups may stand on a dye under this brief, and in which form do they act at the target pH?"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+
+from tuner.brief.records import Brief
+from tuner.library import Library
+from tuner.library.records import HYDROGEN_SHORT, Substituent
+from tuner.structure.molecule import has_match
+
+FAMILY_WORD = "family:"
+SMARTS_WORD = "smarts:"
+
+NITROGEN_FAMILIES = ("hydrogen", "alkyl", "substituted alkyl", "aryl")
+"""Groups of these families may stand on the reporting nitrogen; an acyl group there makes an amide, which
+reports nothing.
+"""
+
+NEAR_PH = 1.5
+"""A group whose own pKa lies within this distance of the target is partly ionised there; common practice,
+no source.
+"""
+
+
+def is_named(group: Substituent, words: Iterable[str]) -> bool:
+    """Whether a group is meant by any of these words: a short name, `family:NAME` or `smarts:PATTERN`."""
+    for word in words:
+        if word.startswith(FAMILY_WORD):
+            if group.family == word.removeprefix(FAMILY_WORD).strip():
+                return True
+        elif word.startswith(SMARTS_WORD):
+            if has_match(group.smiles, word.removeprefix(SMARTS_WORD).strip(), place="groups"):
+                return True
+        elif group.short == word:
+            return True
+    return False
+
+
+def is_free_form(group: Substituent, library: Library) -> bool:
+    """Whether a group is written as it is in the free dye: of two protonation states the one with less
+    charge.
+    """
+    if not group.other_form:
+        return True
+    other = library.substituents[group.other_form]
+    return (abs(group.charge), -group.charge) <= (abs(other.charge), -other.charge)
+
+
+def palette(brief: Brief, library: Library) -> tuple[Substituent, ...]:
+    """The groups that the brief allows, hydrogen first, then in the order of the table; handles of an
+    anchor excluded.
+    """
+    groups = brief.groups
+    allowed = [
+        group
+        for group in library.substituents.values()
+        if group.short != HYDROGEN_SHORT
+        and is_free_form(group, library)
+        and (not groups.allow or is_named(group, (*groups.allow, *groups.require)))
+        and not is_named(group, groups.forbid)
+        and group.short not in groups.anchors
+    ]
+    return (library.substituents[HYDROGEN_SHORT], *allowed)
+
+
+def own_pka(group: Substituent, library: Library) -> float | None:
+    """pKa of a group's own acid-base equilibrium (parent of its series, 25 degC, water); None where it has
+    none.
+    """
+    if not group.ionises or not group.other_form:
+        return None
+    value = library.series[group.ionises].parent_pka
+    return value.value if value.known else None
+
+
+def acting_form(group: Substituent, target_ph: float, library: Library) -> Substituent:
+    """The protonation state of a group that dominates at this pH: of the two, the more acidic one below its
+    pKa.
+    """
+    pka = own_pka(group, library)
+    if pka is None:
+        return group
+    other = library.substituents[group.other_form]
+    acid, base = (group, other) if group.charge > other.charge else (other, group)
+    return acid if target_ph < pka else base
+
+
+def near_target(group: Substituent, target_ph: float, library: Library) -> bool:
+    """Whether the group is partly ionised at the target pH, so that one form does not describe it."""
+    pka = own_pka(group, library)
+    return pka is not None and abs(pka - target_ph) < NEAR_PH
