@@ -9,13 +9,13 @@ import pytest
 from tuner.library.read_acidity import SUBSTITUENT_COLUMNS
 
 GROUPS = (
-    {"name": "hydrogen", "short": "H", "smiles": "*[H]", "family": "hydrogen", "sigma_meta": "0", "bulk": "0"},
+    {"name": "hydrogen", "short": "H", "smiles": "*[H]", "family": "hydrogen", "bulk": "0"},
     {"name": "nitro", "short": "NO2", "smiles": "*[N+](=O)[O-]", "family": "nitro", "sigma_para": "0.78"},
     {"name": "methoxy", "short": "OMe", "smiles": "*OC", "family": "oxygen", "sigma_para": "-0.27"},
-    {"name": "carboxyl", "short": "CO2H", "smiles": "*C(=O)O", "family": "carboxyl", "ionises": "benzoic_acid",
-     "other_form": "CO2-"},
-    {"name": "carboxylate", "short": "CO2-", "smiles": "*C(=O)[O-]", "family": "carboxyl", "charge": "-1",
-     "ionises": "benzoic_acid", "other_form": "CO2H"},
+    {"name": "carboxyl", "short": "CO2H", "smiles": "*C(=O)O", "family": "carboxyl",
+     "ionises": "benzoic_acid", "other_form": "CO2-"},
+    {"name": "carboxylate", "short": "CO2-", "smiles": "*C(=O)[O-]", "family": "carboxyl",
+     "charge": "-1", "ionises": "benzoic_acid", "other_form": "CO2H"},
 )  # fmt: skip
 
 SERIES = """

@@ -5,6 +5,7 @@ from __future__ import annotations
 from tuner.screening.records import WARN, Flag
 from tuner.screening.rules import LISTED_AMINE, HazardRules, RestrictedAmine
 from tuner.structure.cleavage import cleave_azo
+from tuner.structure.molecule import identity_key
 
 RESTRICTED = "restricted dye"
 """The wider class of the flag."""
@@ -17,7 +18,7 @@ def released_amines(smiles: str, rules: HazardRules) -> tuple[RestrictedAmine, .
     Regulation (EC) No 1907/2006, Annex XVII, entry 43, Appendix 8. Partial cleavage counts too. A dye that is
     itself on the list counts as releasing it. Raises StructureError where the structure cannot be treated.
     """
-    pieces = {*cleave_azo(smiles), smiles}
+    pieces = {*cleave_azo(smiles), identity_key(smiles)}
     return tuple(amine for amine in rules.amines if amine.smiles in pieces)
 
 

@@ -21,6 +21,7 @@ from tuner.library.records import Substituent
 from tuner.screening.match import applying
 from tuner.screening.records import GroupLimit
 from tuner.screening.rules import HAZARDS_FILE, OXYGEN_BALANCE, HazardRules, OxygenRule, Rule, load_rules
+from tuner.structure.assemble import branch_of
 from tuner.structure.molecule import atom_counts
 from tuner.structure.scan import atomic_mass, pattern_counts
 
@@ -35,7 +36,7 @@ TWICE_OXYGEN_NEEDED: Mapping[str, int] = {
 """Twice the oxygen atoms that burn one atom, to CO2, H2O, HX, SO3, P2O5, B2O3, SiO2."""
 
 OPEN_POSITION = re.compile(r"\[\*:\d+\]")
-PHENYL_CAP = "c%99ccccc%99"
+PHENYL_CAP = "c1ccccc1"
 AMINE_CAP = "N"
 UNBOUND = 10**14
 """Larger than any shortfall: a dye of 10,000 g/mol stays below 10^12."""
@@ -151,7 +152,7 @@ def _weights(
 
 def _capped(group_smiles: str, relation: str) -> str:
     """The group on a bare ring or nitrogen: what patterns can reach across the bond is then there."""
-    return group_smiles.replace("*", AMINE_CAP if relation == "nitrogen" else PHENYL_CAP, 1)
+    return (AMINE_CAP if relation == "nitrogen" else PHENYL_CAP) + branch_of(group_smiles)
 
 
 def _oxygen_limit(

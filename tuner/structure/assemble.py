@@ -40,7 +40,8 @@ def branch_of(group: str) -> str:
     root = next(a.GetIdx() for a in mol.GetAtoms() if a.GetAtomicNum() == 0)
     rooted = str(Chem.MolToSmiles(mol, rootedAtAtom=root))
     body = []
-    for token in _TOKEN.findall(rooted[1:]):
+    # beside a metalloid the toolkit writes the open valence as `[*]`
+    for token in _TOKEN.findall(rooted.removeprefix("[*]").removeprefix("*")):
         if token.isdigit() or token.startswith("%"):
             body.append(f"%{_FIRST_GROUP_RING - 1 + int(token.lstrip('%'))}")
         else:
