@@ -173,7 +173,7 @@ def _reporting_ring(bare: Mol, ipso: int, place: str) -> tuple[int, ...]:
 
 def _self_matches(bare: Mol) -> tuple[tuple[int, ...], ...]:
     """Automorphisms of the bare core as atom maps, identity first."""
-    # a query made of the molecule itself compares no hydrogen counts; as all atoms are matched, that is enough
+    # a query made of the molecule itself compares no hydrogen counts; as all atoms are matched, that suffices
     found = bare.GetSubstructMatches(bare, uniquify=False, maxMatches=MAX_SELF_MATCHES)
     identity = tuple(range(bare.GetNumAtoms()))
     return (identity, *sorted({tuple(m) for m in found} - {identity}))

@@ -21,6 +21,7 @@ from rdkit.Chem import Crippen, Descriptors, rdMolDescriptors
 
 from tuner.errors import StructureError
 from tuner.structure.neutral import main_component, neutralise, refuse, short, spell_oxides
+from tuner.structure.ringchain import usual_ring_form
 from tuner.structure.tautomers import usual_tautomer
 
 RDLogger.DisableLog("rdApp.*")  # its messages are many lines long; ours are one line each
@@ -184,7 +185,8 @@ def read_molecule(smiles: str, *, place: str = "") -> Molecule:
         atom.SetIntProp("_input", kept[atom.GetIdx()])
     try:
         spell_oxides(mol)
-        mol = Chem.RemoveHs(usual_tautomer(neutralise(mol), notes))
+        mol = usual_tautomer(neutralise(mol), notes)
+        mol = Chem.RemoveHs(usual_ring_form(mol, notes))
         spelled = str(Chem.MolToSmiles(mol))
         order = list(mol.GetPropsAsDict(True, True)["_smilesAtomOutputOrder"])
         final = Chem.RenumberAtoms(mol, order)
