@@ -1,6 +1,7 @@
 """What do the groups of a site look like while other sites of the molecule are ionised?
 
-The charged form of a group (`*C(=O)[O-]` for `*C(=O)O`) has constants of its own. It is cut out of the molecule after
+The charged form of a group (`*C(=O)[O-]` for `*C(=O)O`) has constants of its own. It is cut out of the
+molecule after
 the charges were set, so that any group, tabulated or not, is spelled as the tables spell it.
 """
 
@@ -34,9 +35,7 @@ def _charged(smiles: str, charges: tuple[tuple[int, int], ...]) -> Mol:
     return mol
 
 
-def charged_groups(
-    smiles: str, groups: Iterable[PlacedGroup], charges: Mapping[int, int]
-) -> dict[str, str]:
+def charged_groups(smiles: str, groups: Iterable[PlacedGroup], charges: Mapping[int, int]) -> dict[str, str]:
     """Label -> canonical `*...` SMILES of the groups of one site view while some atoms carry a charge.
 
     Parameters
@@ -45,7 +44,8 @@ def charged_groups(
         `Dissection.smiles`; atom numbers refer to it.
     groups : PlacedGroups of one SiteView
     charges : mapping
-        Atom number -> formal charge of the ionised form: -1 for an acid that lost its proton, +1 for an amine that
+        Atom number -> formal charge of the ionised form: -1 for an acid that lost its proton, +1 for an
+        amine that
         took one up. Boron is left as it is.
 
     Returns
@@ -70,3 +70,18 @@ def charged_groups(
     cuts = {(c.atoms, c.entry): c.smiles for c in cut_groups(mol, core)}
     by_atoms = {atoms: text for (atoms, _), text in sorted(cuts.items())}
     return {label: by_atoms.get(g.atoms, found[label]) for label, g in ((g.label, g) for g in placed)}
+
+
+@lru_cache(maxsize=4096)
+def bonds_between(smiles: str, first: int, second: int) -> int:
+    """Number of bonds on the shortest path between two atoms of a structure as written.
+
+    >>> bonds_between("NCC(=O)O", 0, 4)
+    3
+    """
+    return len(Chem.GetShortestPath(parse(smiles), first, second)) - 1
+
+
+def formal_charge(smiles: str) -> int:
+    """Net formal charge of a structure as written."""
+    return int(Chem.GetFormalCharge(parse(smiles)))

@@ -1,0 +1,232 @@
+"""What is the pKa of this molecule in this medium?
+
+SMILES in, `Prediction` out. A molecule that cannot be read or treated gives an empty prediction with a note
+that says why;
+nothing here raises for a bad molecule.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import replace
+from functools import lru_cache
+from math import hypot, nan
+
+from tuner.acidity.medium import medium_notes, require_valid
+from tuner.acidity.microstates import MOST_SITES, Microstates
+from tuner.brief.records import Medium
+from tuner.errors import TunerError
+from tuner.library.catalogue import Library
+from tuner.library.records import MeasuredPka
+from tuner.prediction.estimate import Estimator
+from tuner.prediction.held import HELD_PAIRS
+from tuner.prediction.ionisation import Ionisation
+from tuner.prediction.records import Prediction
+from tuner.prediction.ring_model import RingModel
+from tuner.prediction.sites import REPORTING_KINDS, SiteMaker, SiteTable
+from tuner.structure.charging import bonds_between, formal_charge
+from tuner.structure.dissect import dissect
+from tuner.structure.molecule import identity_key, read_molecule
+from tuner.structure.records import Dissection
+from tuner.structure.scaffolds import index_cores
+
+CLOSE_PKA = 1.5
+"""A group whose own pKa lies this near the reporting site's is half charged at the transition."""
+CLOSE_SD = 0.15
+SCALE_PH = (-12.0, 16.0)
+"""Constants outside this range are not given: no acidity scale in water reaches there."""
+WATER_PH = (0.0, 14.0)
+
+
+class MoleculeDoor:
+    """Predicts molecules with one library, one ring model and one medium.
+
+    Parameters
+    ----------
+    library : Library
+    model : RingModel
+        The fitted acidity model.
+    medium : Medium
+        Checked here; BriefError where it is out of range.
+    measured : iterable of MeasuredPka
+        The user's own measured values; they come before the library's.
+    """
+
+    def __init__(
+        self,
+        library: Library,
+        model: RingModel,
+        medium: Medium | None = None,
+        measured: Iterable[MeasuredPka] = (),
+    ) -> None:
+        self.medium = medium if medium is not None else Medium()
+        require_valid(self.medium)
+        self.library = library
+        self.index = index_cores(library.cores)
+        self.estimator = Estimator(library)
+        self._maker = SiteMaker(library, self.index, model, self.estimator)
+        self._known = _known_values((*library.measured, *measured))
+
+    def predict(self, smiles: str, *, reporting: str | int = "", place: str = "") -> Prediction:
+        """One molecule.
+
+        Parameters
+        ----------
+        smiles : str
+        reporting : str or int
+            Which site reports: "" by rule (phenols before anilines, larger core first), a kind of site, or
+            an atom number of the
+            given SMILES.
+        place : str
+            File and row, for the note.
+        """
+        try:
+            found = dissect(smiles, self.index, reporting=reporting, place=place)
+        except TunerError as error:
+            return Prediction(str(smiles), notes=(error.text,))
+        if not found.sites or found.sites[0].kind not in REPORTING_KINDS:
+            note = "no ionising phenol or aniline in this molecule"
+            return Prediction(str(smiles), found.smiles, notes=(*found.notes, note))
+        return self._treated(str(smiles), found)
+
+    def known(self, smiles: str) -> MeasuredPka | None:
+        """A measured value of this compound, the user's own first."""
+        try:
+            return self._known.get(identity_key(smiles))
+        except TunerError:
+            return None
+
+    def _treated(self, smiles: str, found: Dissection) -> Prediction:
+        """A molecule with a reporting site."""
+        table = self._maker.table(found, self.medium)
+        ionisation = Ionisation(
+            table.ions,
+            table.energies,
+            lambda i, j: bonds_between(found.smiles, table.ions[i].atom, table.ions[j].atom),
+            formal_charge(found.smiles),
+        )
+        lead = table.shown[0]
+        answer = Prediction(
+            smiles=smiles,
+            treated=found.smiles,
+            core=lead.core,
+            substitution=lead.substitution,
+            reporting_atom=_input_atom(smiles, lead.atom),
+            sites=tuple(table.shown),
+            terms=lead.terms,
+            known=self.known(smiles),
+        )
+        notes = [*found.notes, *table.notes, *lead.notes, *medium_notes(self.medium)]
+        if not ionisation.treatable:
+            notes.append(f"{len(ionisation.free)} ionising groups; at most {MOST_SITES} are treated")
+            return replace(answer, notes=tuple(dict.fromkeys(notes)))
+        return self._filled(answer, table, ionisation, notes)
+
+    def _filled(
+        self, answer: Prediction, table: SiteTable, ionisation: Ionisation, notes: list[str]
+    ) -> Prediction:
+        """Numbers of a treatable molecule."""
+        states = ionisation.microstates()
+        plain = ionisation.microstates(medium=False)
+        place = ionisation.free.index(0)
+        macroscopic = ionisation.macroscopic(states)
+        pka = self._transition(answer, ionisation, states, place)
+        pka25 = self._transition(answer, ionisation, plain, place)
+        charged = ionisation.charged_near(0, states, pka)
+        around = table.evaluate[0](charged)
+        sd = hypot(around.sd, table.ions[0].effect.sd)
+        near = [s for k, s in enumerate(table.ions) if k and abs(s.pka - pka) < CLOSE_PKA and s.own is None]
+        if near:
+            notes.append(
+                f"half charged at the transition: {', '.join(sorted({s.kind.replace('_', ' ') for s in near}))}"
+            )
+            sd = hypot(sd, CLOSE_SD)
+        notes += _range_notes(pka)
+        intercept, slope = table.ions[0].effect.temperature_line(ionisation.charge_around(0, states, pka))
+        inside = [(p, s) for p, s in macroscopic if SCALE_PH[0] <= p <= SCALE_PH[1]]
+        beyond = not SCALE_PH[0] <= pka <= SCALE_PH[1]
+        return replace(
+            answer,
+            pka=nan if beyond else pka,
+            pka_sd=nan if beyond else sd,
+            pka25=nan if beyond else pka25,
+            dpka_dt=nan if beyond else intercept + slope * pka,
+            macroscopic_pkas=tuple(p for p, _ in inside),
+            macroscopic_sds=tuple(s for _, s in inside),
+            terms=around.terms or answer.terms,
+            notes=tuple(dict.fromkeys(notes)),
+        )
+
+    def _transition(
+        self, answer: Prediction, ionisation: Ionisation, states: Microstates, place: int
+    ) -> float:
+        """pH of half ionisation of the reporting site; for two sites in one chromophore the step that
+        reports.
+        """
+        if answer.core in HELD_PAIRS and (0, 1) in ionisation.pair_energies:
+            wanted = ionisation.sites[0].pka
+            if HELD_PAIRS[answer.core].parent_step == 2:
+                wanted += ionisation.pair_energies[0, 1]
+            return min((float(p) for p in states.macroscopic_pkas()), key=lambda p: abs(p - wanted))
+        return states.transition_ph([place])
+
+
+def _known_values(measured: Iterable[MeasuredPka]) -> dict[str, MeasuredPka]:
+    """Identity -> measured value; later ones win; rows that cannot be read are passed over."""
+    found = {}
+    for value in measured:
+        try:
+            found[identity_key(value.smiles)] = value
+        except TunerError:
+            continue
+    return found
+
+
+def _range_notes(pka: float) -> list[str]:
+    """What must be said about a value outside the pH scale of water."""
+    if not SCALE_PH[0] <= pka <= SCALE_PH[1]:
+        return [f"the reporting group does not ionise between pH {SCALE_PH[0]:g} and {SCALE_PH[1]:g}"]
+    if pka < WATER_PH[0]:
+        return ["below pH 0 the value belongs to an acidity function, not to a pH"]
+    if pka > WATER_PH[1]:
+        return ["above pH 14 the value is an extrapolation"]
+    return []
+
+
+def _input_atom(smiles: str, atom: int) -> int:
+    """Atom number in the string that was given."""
+    return int(read_molecule(smiles).input_atoms[atom])
+
+
+@lru_cache(maxsize=8)
+def _door(version: str, overlay: str, medium: Medium) -> MoleculeDoor:
+    """Kept doors; the library's version and folder stand for the library."""
+    from pathlib import Path
+
+    from tuner.library import load_library
+    from tuner.prediction.acidity_face import shipped_model
+
+    library = load_library(Path(overlay) if overlay else None)
+    return MoleculeDoor(library, shipped_model(library), medium)
+
+
+def predict_molecule(smiles: str, medium: Medium | None = None, library: Library | None = None) -> Prediction:
+    """Predict one molecule with the shipped model.
+
+    Parameters
+    ----------
+    smiles : str
+    medium : Medium, optional
+        25 degC and no salt unless given.
+    library : Library, optional
+        The shipped one unless given.
+
+    Returns
+    -------
+    Prediction
+        Empty with a note where the molecule cannot be treated.
+    """
+    from tuner.library import load_library
+
+    used = library or load_library()
+    return _door(used.version, str(used.overlay or ""), medium or Medium()).predict(smiles)

@@ -1,0 +1,218 @@
+"""What is the pKa of each site of a molecule, and of which groups does it consist?
+
+Turns the site views of a dissection into evaluated sites: phenols and anilines through the ring model, for
+any set of charged
+neighbours; every other site through its own rules.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field
+from math import log10
+
+from tuner.acidity.medium import medium_effect
+from tuner.brief.records import Medium
+from tuner.library.catalogue import Library
+from tuner.library.records import Series, Substituent
+from tuner.prediction.estimate import Estimator
+from tuner.prediction.held import COUNTED_IN_PARENT, HELD_OTHER, HELD_PAIRS
+from tuner.prediction.ionisation import IonSite
+from tuner.prediction.records import SitePrediction, Term
+from tuner.prediction.ring_model import RingModel
+from tuner.prediction.side_sites import side_pka, side_site
+from tuner.prediction.words import substitution
+from tuner.structure.charging import charged_groups
+from tuner.structure.records import Dissection, SiteView
+from tuner.structure.scaffolds import CoreIndex
+
+REPORTING_KINDS = ("phenol", "aniline")
+AMINE_SERIES = ("anilinium", "n_alkyl_anilinium", "nn_dialkyl_anilinium")
+STATISTICAL_TWO = log10(2.0)
+
+Charges = Mapping[int, int]
+"""Atom number -> formal charge that it carries when its site is ionised."""
+
+
+@dataclass(frozen=True, slots=True)
+class Evaluated:
+    """A phenol or aniline evaluated for one set of charged neighbours (pKa25)."""
+
+    pka: float
+    sd: float
+    terms: tuple[Term, ...]
+
+
+@dataclass
+class SiteTable:
+    """All sites of one molecule, ready for the microstates, and what is to be said about them."""
+
+    ions: list[IonSite]
+    shown: list[SitePrediction]
+    energies: dict[tuple[int, int], float]
+    evaluate: dict[int, Callable[[frozenset[int]], Evaluated]]
+    notes: list[str] = field(default_factory=list)
+
+
+class SiteMaker:
+    """Evaluates the sites of dissected molecules with one library and one ring model."""
+
+    def __init__(self, library: Library, index: CoreIndex, model: RingModel, estimator: Estimator) -> None:
+        self._library, self._index, self._model, self._estimator = library, index, model, estimator
+
+    def series_of(self, view: SiteView) -> Series:
+        """The equilibrium of a phenol or aniline; amines by the number of groups on nitrogen."""
+        if view.kind == "phenol":
+            return self._library.series["phenol"]
+        groups = view.scaffold_groups or view.groups
+        count = sum(g.label.startswith("N") for g in groups)
+        if view.scaffold not in ("", "aniline"):
+            return self._library.series[self._library.cores[view.core].series]
+        return self._library.series[AMINE_SERIES[min(count, 2)]]
+
+    def table(self, found: Dissection, medium: Medium) -> SiteTable:
+        """Every site of a dissection; sites of a kind without rules are left out with a note."""
+        made = SiteTable([], [], {}, {})
+        kept: list[SiteView] = []
+        for view in found.sites:
+            if view.kind in REPORTING_KINDS or side_site(view.kind, view, self._library) is not None:
+                kept.append(view)
+            else:
+                made.notes.append(f"no rules for a {view.kind.replace('_', ' ')}; it was left neutral")
+        charges = {v.reporting_atom: self._charge(v) for v in kept}
+        for number, view in enumerate(kept):
+            if view.kind in REPORTING_KINDS:
+                self._add_ring_site(made, found, kept, number, charges, medium)
+            else:
+                self._add_side_site(made, view, medium)
+        self._held_together(made, kept)
+        return made
+
+    def _charge(self, view: SiteView) -> int:
+        """+1 where ionising means taking up a proton, -1 where it means losing one."""
+        if view.kind in REPORTING_KINDS:
+            return 1 if view.kind == "aniline" else -1
+        site = side_site(view.kind, view, self._library)
+        return 1 if site is not None and site.series.acid_charge > 0 else -1
+
+    def resolve(self, smiles_by_label: Mapping[str, str], notes: list[str]) -> dict[str, Substituent]:
+        """Groups as library records, estimated where no table lists them."""
+        resolved = {}
+        for label, smiles in smiles_by_label.items():
+            group, estimated = self._estimator.group(smiles)
+            resolved[label] = group
+            if estimated:
+                notes.append(f"{group.short} at {label} {group.note}")
+        return resolved
+
+    def _add_ring_site(
+        self,
+        made: SiteTable,
+        found: Dissection,
+        kept: list[SiteView],
+        number: int,
+        charges: Charges,
+        medium: Medium,
+    ) -> None:
+        """A phenol or aniline: evaluated for any set of charged sites."""
+        view = kept[number]
+        prepared = self._index.core(view.core)
+        notes: list[str] = []
+        neutral = self.resolve({g.label: g.smiles for g in view.groups}, notes)
+        atoms = [v.reporting_atom for v in kept]
+        inside = {a for a, label in view.other_sites if label}
+
+        def evaluate(charged: frozenset[int]) -> Evaluated:
+            acting = {atoms[k]: charges[atoms[k]] for k in charged if atoms[k] in inside}
+            if not acting:
+                groups = neutral
+            else:
+                groups = self.resolve(charged_groups(found.smiles, view.groups, acting), [])
+            return Evaluated(*self._model.evaluate(prepared, groups))
+
+        known: dict[frozenset[int], Evaluated] = {}
+
+        def cached(charged: frozenset[int]) -> Evaluated:
+            key = frozenset(k for k in charged if atoms[k] in inside)
+            if key not in known:
+                known[key] = evaluate(key)
+            return known[key]
+
+        base = cached(frozenset())
+        effect = medium_effect(self.series_of(view), medium)
+        made.evaluate[number] = cached
+        made.ions.append(
+            IonSite(
+                kind=view.kind,
+                atom=view.reporting_atom,
+                charge_if_ionised=charges[view.reporting_atom],
+                pka=base.pka,
+                sd=base.sd,
+                own=lambda charged: cached(charged).pka,
+                effect=effect,
+            )
+        )
+        made.shown.append(
+            SitePrediction(
+                kind=view.kind,
+                atom=view.reporting_atom,
+                core=view.core,
+                substitution=substitution(view.groups, neutral),
+                pka25=base.pka,
+                sd=base.sd,
+                terms=base.terms,
+                notes=tuple(notes),
+            )
+        )
+
+    def _add_side_site(self, made: SiteTable, view: SiteView, medium: Medium) -> None:
+        """Any other site."""
+        site = side_site(view.kind, view, self._library)
+        assert site is not None
+        pka, sd = side_pka(view, site, self._estimator)
+        charge = 1 if site.series.acid_charge > 0 else -1
+        effect = medium_effect(site.series, medium)
+        made.ions.append(IonSite(view.kind, view.reporting_atom, charge, pka, sd, None, effect))
+        term = Term("parent", site.series.title, pka, sd, source=site.series.source)
+        made.shown.append(SitePrediction(view.kind, view.reporting_atom, "", "", pka, sd, (term,)))
+
+    def _held_together(self, made: SiteTable, kept: list[SiteView]) -> None:
+        """Sites that one core holds together (`held`)."""
+        for i, view in enumerate(kept):
+            if view.kind not in REPORTING_KINDS:
+                continue
+            held = [a for a, label in view.other_sites if not label]
+            for j, other in enumerate(kept):
+                if i == j or other.reporting_atom not in held:
+                    continue
+                if view.core == other.core and view.core in HELD_PAIRS and other.kind == view.kind:
+                    self._pair(made, view.core, i, j)
+                elif view.core in COUNTED_IN_PARENT:
+                    made.energies[i, j] = made.energies[j, i] = 0.0
+                    if view.core in HELD_OTHER and other.kind == view.kind:
+                        self._replace(made, j, *HELD_OTHER[view.core])
+
+    def _pair(self, made: SiteTable, core: str, i: int, j: int) -> None:
+        """Site i of two equal ones: its pKa beside a neutral partner, and the rise when the partner is
+        charged.
+        """
+        held = HELD_PAIRS[core]
+        model, bare = made.shown[i].pka25, self._library.cores[core].parent_pka.value
+        other = held.other_pka + (model - bare if held.follows else 0.0)
+        first, second = (model, other) if held.parent_step == 1 else (other, model)
+        beside_neutral, beside_charged = first + STATISTICAL_TWO, second - STATISTICAL_TWO
+        made.energies[i, j] = beside_charged - beside_neutral
+        shift = beside_neutral - model
+        self._replace(made, i, beside_neutral, made.shown[i].sd, shift)
+
+    def _replace(self, made: SiteTable, k: int, pka: float, sd: float, shift: float | None = None) -> None:
+        """Put another pKa in the place of the ring model's, or shift it."""
+        old = made.ions[k]
+        own: Callable[[frozenset[int]], float] | None = None
+        if shift is not None and old.own is not None:
+            inner, moved = old.own, shift
+
+            def own(charged: frozenset[int]) -> float:
+                return inner(charged) + moved
+
+        made.ions[k] = IonSite(old.kind, old.atom, old.charge_if_ionised, pka, sd, own, old.effect)
