@@ -10,7 +10,7 @@ from tuner.brief.table import SECTIONS, BriefTable
 from tuner.errors import TunerError
 from tuner.library import Library
 from tuner.library.checks import nearest
-from tuner.library.records import HYDROGEN_SHORT
+from tuner.library.records import HYDROGEN_SHORT, Substituent
 
 FAMILY = "family:"
 SMARTS = "smarts:"
@@ -59,15 +59,18 @@ def read_medium(table: BriefTable, base: Medium) -> Medium:
 
 
 def read_also(table: BriefTable, base: Medium) -> Target:
-    """One `[[also]]`: a further target in its own medium."""
+    """One `[[also]]`: a further target in its own medium. Its margin may be 0 where the dye must not switch."""
     table.only(*SECTIONS["also"])
+    role = table.one_word("role", ROLES, ROLES[0])
+    if role == ROLES[0]:
+        tolerance = units.quantity(table, "tolerance", units.TOLERANCE)
+    else:
+        tolerance = units.quantity(table, "tolerance", units.MARGIN, 0.0)
     return Target(
         ph=units.quantity(table, "ph", units.PH),
-        tolerance=units.quantity(table, "tolerance", units.TOLERANCE, 0.0)
-        if table.values.get("role", ROLES[0]) != ROLES[0]
-        else units.quantity(table, "tolerance", units.TOLERANCE),
+        tolerance=tolerance,
         medium=read_medium(table.table("medium"), base),
-        role=table.one_word("role", ROLES, ROLES[0]),
+        role=role,
         name=table.text("name", ""),
     )
 
@@ -143,9 +146,15 @@ def _group_name(table: BriefTable, key: str, entry: str, library: Library) -> st
             table.fail(f'there is no family "{family}"', key, nearest(family, library.families()))
         return FAMILY + family
     try:
-        return library.find_substituent(entry).short
+        return _free_form(library.find_substituent(entry), library).short
     except TunerError as fault:
         table.fail(fault.what, key, fault.remedy)
+
+
+def _free_form(group: Substituent, library: Library) -> Substituent:
+    """The group as it is written in a free dye: a carboxylate is asked for as its acid."""
+    other = library.substituents.get(group.other_form, group)
+    return min(group, other, key=lambda form: (abs(form.charge), -form.charge))
 
 
 def read_limits(table: BriefTable) -> Limits:

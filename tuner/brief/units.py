@@ -61,6 +61,7 @@ def _kilojoule_free(value: float) -> str:
 
 PH = Quantity(-10.0, 16.0, "a pH; below 0 it is an acidity function")
 TOLERANCE = Quantity(0.01, 3.0, "pH units", _tolerance)
+MARGIN = Quantity(0.0, 3.0, "pH units", _tolerance)
 TEMPERATURE = Quantity(0.0, 100.0, "degC", _kelvin)
 IONIC_STRENGTH = Quantity(0.0, 3.0, "mol/L", _millimolar)
 COSOLVENT = Quantity(0.0, 80.0, "per cent by mass", _fraction)

@@ -18,7 +18,7 @@ CAUTIONS: tuple[str, ...] = (
 
 HOW_SURE: tuple[str, ...] = (
     "pKa' is conditional: the pH at which half of the reporting groups are ionised in the stated medium.",
-    "Its error joins those of all constants with their correlations, the misfit of the model and the medium's.",
+    "Its error joins those of all constants, their correlations, the misfit of the model and the medium.",
     "The hit probability is the chance that the true pKa' lies in the window, given that error.",
     "The working range is pKa' - 1 to pKa' + 1, what an eye can read of a two-colour dye.",
     "Steps are the fewest reactions from the shelf by the rules switched on; yields are not foretold.",

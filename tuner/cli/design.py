@@ -1,0 +1,117 @@
+"""Command `tuner design`: from a brief to a folder of results."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from math import isfinite
+from pathlib import Path
+from time import perf_counter
+
+from rich.table import Table
+
+from tuner.brief import Brief, find_brief, read_brief
+from tuner.cli.console import note, out, progress, say, table
+from tuner.cli.faults import placed_in
+from tuner.report import digits, write_run
+from tuner.report.folder import check_free, free_folder
+from tuner.report.wording import CAUTIONS, medium_in_words, target_in_words
+from tuner.search.result import Candidate, DesignResult
+
+OUTPUTS = Path("outputs")
+ROWS_SHOWN = 12
+LONGEST_SUBSTITUTION = 34
+
+
+def run(name: str, *, out: Path | None, seed: int | None, again: bool, scheduler: str, quiet: bool) -> None:
+    """Read the brief, search, write the folder, print a short table."""
+    brief = read_brief(find_brief(name))
+    if seed is not None:
+        brief = replace(brief, search=replace(brief.search, seed=seed))
+    folder = out if out is not None else free_folder(OUTPUTS, brief.path.stem)
+    check_free(folder, again)
+    result, files = _make(brief, folder, name, again=again, scheduler=scheduler, quiet=quiet)
+    if not quiet:
+        _print(result, files)
+
+
+def _make(
+    brief: Brief, folder: Path, name: str, *, again: bool, scheduler: str, quiet: bool
+) -> tuple[DesignResult, tuple[Path, ...]]:
+    """Search and write."""
+    from tuner.cli.exhibits import exhibits_of
+    from tuner.search import design
+
+    with progress(quiet) as report, placed_in(brief):
+        result = design(brief, progress=report, scheduler=scheduler)
+        start = perf_counter()
+        exhibits = exhibits_of(result, report)
+        drawn = ("drawing", perf_counter() - start)
+    result = replace(result, timings_s=(*result.timings_s, drawn))
+    command = f"tuner design {name} --seed {brief.search.seed}"
+    return result, write_run(result, exhibits, folder, command=command, again=again)
+
+
+def _print(result: DesignResult, files: tuple[Path, ...]) -> None:
+    """The short table, the doubts, and where the files are."""
+    out().print(candidate_table(result))
+    say(f"{result.method} search: {result.certificate}")
+    say("")
+    say(f"Written to {files[0].parent}{_separator(files[0])}")
+    say("  " + ", ".join(path.name for path in files))
+    say(f"  open {_page(files)} to look at structures and routes")
+    say("")
+    say(" ".join(CAUTIONS[:2]))
+    note(result.notes)
+
+
+def _separator(path: Path) -> str:
+    """The sign between folder and file, as this system writes it."""
+    return str(path)[len(str(path.parent))]
+
+
+def _page(files: tuple[Path, ...]) -> Path:
+    """The page among the files."""
+    return next(path for path in files if path.suffix == ".html")
+
+
+def candidate_table(result: DesignResult) -> Table:
+    """The first candidates, with units in the headings."""
+    several = len({c.core for c in result.candidates}) > 1
+    headings = [("rank", "right"), ("substitution", "left")]
+    headings += [("core", "left")] if several else []
+    headings += [
+        ("pKa' ± sd", "right"),
+        ("offset, pH", "right"),
+        ("in window", "right"),
+        ("steps", "right"),
+        ("g/mol", "right"),
+        ("front", "left"),
+        ("cautions", "right"),
+    ]
+    shown = result.candidates[:ROWS_SHOWN]
+    target = result.brief.target
+    title = f"{result.brief.title}: {target_in_words(target)}, {medium_in_words(target.medium)}"
+    more = len(result.candidates) - len(shown)
+    caption = "front: nothing is closer, shorter and lighter at once; cautions: see the table or page"
+    caption = f"{more} more rows in the files; {caption}" if more else caption
+    return table(title, headings, [_row(c, several) for c in shown], caption)
+
+
+def _row(candidate: Candidate, several: bool) -> tuple[str, ...]:
+    """One candidate in words."""
+    c = candidate
+    cut = LONGEST_SUBSTITUTION
+    words = c.substitution if len(c.substitution) <= cut else c.substitution[: cut - 1] + "…"
+    measured = " m" if isfinite(c.measured_pka) else ""
+    return (
+        str(c.rank),
+        words,
+        *((c.core,) if several else ()),
+        digits.pka_text(c.pka, c.pka_sd) + measured,
+        digits.signed(c.offset),
+        digits.percent(c.hit_probability),
+        str(c.steps),
+        digits.mass(c.molar_mass_g_mol),
+        "knee" if c.knee else "yes" if c.front else "",
+        str(len(c.cautions)) if c.cautions else "",
+    )
