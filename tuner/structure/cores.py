@@ -3,9 +3,9 @@
 Rules
 -----
 - The reporting atom is the phenol oxygen or the aniline nitrogen on an aromatic carbon: the one that
-  `reporting_smarts` picks, else the only one of the kind that the series names (amine series end in
-  `anilinium`). Two that the symmetry of the bare core exchanges count as one; two different ones are an
-  error.
+  `reporting_smarts` picks (matched on the core as written, open positions are [#0]), else the only one of
+  the kind that the series names (amine series end in `anilinium`). Two that the symmetry of the bare core
+  exchanges count as one; two different ones are an error.
 - The scaffold is "phenol" or "aniline" where the reporting ring is a benzene ring that shares no atom with
   another ring; what the core carries there is a fixed slot. A fused reporting ring, or a core with a
   measured parent whose symmetry exchanges two reporting groups (sulfonephthaleins, bisphenol dyes), is a
@@ -33,7 +33,7 @@ from rdkit.Chem import Descriptors
 
 from tuner.errors import StructureError
 from tuner.library.records import Core
-from tuner.structure.molecule import flat, parse
+from tuner.structure.molecule import flat, parse, read_smarts
 from tuner.structure.positions import Frame, all_slots, has_twin, is_lone_benzene, label_order, permutations
 from tuner.structure.records import PreparedCore
 
@@ -41,7 +41,7 @@ Mol = Any
 
 MAX_SELF_MATCHES = 5000
 PHENOL_OXYGEN = "[OX2H1]-c"
-ANILINE_NITROGEN = "[NX3;+0;!$(N-[#6]=[O,S,N]);!$(N-[!#6;!#1])]-c"
+ANILINE_NITROGEN = "[NX3;+0;!$(N-[#6]=[O,S,N]);!$(N-[!#6;!#1;!#0])]-c"
 
 
 @dataclass(frozen=True)
@@ -116,33 +116,42 @@ def _bare(mol: Mol, dummies: Mapping[str, int]) -> tuple[Mol, dict[str, int]]:
     return flat(bare), shift
 
 
-def _candidates(core: Core, bare: Mol) -> list[int]:
-    """Atoms that could report, by the series or by the author's pattern."""
+def _candidates(core: Core, mol: Mol) -> list[int]:
+    """Atoms that could report, by the author's pattern or by the series; numbers without the open
+    positions."""
     if core.reporting_smarts:
-        from tuner.structure.molecule import read_smarts
-
         pattern = read_smarts(core.reporting_smarts, place=f"{_place(core)}, reporting_smarts")
-        return sorted({m[0] for m in bare.GetSubstructMatches(pattern)})
-    first = ANILINE_NITROGEN if "anil" in core.series or "amin" in core.series else PHENOL_OXYGEN
-    return sorted({m[0] for m in bare.GetSubstructMatches(Chem.MolFromSmarts(first))})
+    else:
+        pattern = read_smarts(ANILINE_NITROGEN if _is_amine(core) else PHENOL_OXYGEN)
+    dummies = [a.GetIdx() for a in mol.GetAtoms() if a.GetAtomicNum() == 0]
+    found = {m[0] for m in mol.GetSubstructMatches(pattern)} - set(dummies)
+    return sorted(k - sum(d < k for d in dummies) for k in found)
 
 
-def _reporting(core: Core, bare: Mol, automorphisms: tuple[tuple[int, ...], ...]) -> tuple[int, int]:
-    """The reporting atom and the aromatic carbon that carries it."""
-    found = _candidates(core, bare)
-    kind = "amino nitrogen" if "anil" in core.series else "hydroxyl oxygen"
+def _is_amine(core: Core) -> bool:
+    """Whether the series is one of amines."""
+    return "anil" in core.series or "amin" in core.series
+
+
+def _reporting(
+    core: Core, mol: Mol, bare: Mol, open_atoms: Mapping[str, int], automorphisms: tuple[tuple[int, ...], ...]
+) -> tuple[int, int]:
+    """The reporting atom and the aromatic carbon that carries it (numbers of `bare`)."""
+    found = _candidates(core, mol)
     if not found:
+        kind = "amino nitrogen" if _is_amine(core) else "hydroxyl oxygen"
         raise StructureError(
             f"no reporting {kind} on an aromatic carbon was found",
             place=_place(core),
             remedy="correct `smiles`, `series` or `reporting_smarts`",
         )
-    orbit = {perm[found[0]] for perm in automorphisms}
-    if not set(found) <= orbit:
+    carried = sorted(open_atoms.values())
+    alike = [m for m in automorphisms if sorted(m[a] for a in carried) == carried]
+    if not set(found) <= {m[found[0]] for m in alike}:
         raise StructureError(
             f"{len(found)} different groups could report",
             place=_place(core),
-            remedy="pick one with reporting_smarts (first atom of the pattern)",
+            remedy="pick one with reporting_smarts (first atom of the pattern; an open position is [#0])",
         )
     atom = bare.GetAtomWithIdx(found[0])
     carriers = sorted(n.GetIdx() for n in atom.GetNeighbors() if n.GetIsAromatic())
@@ -216,7 +225,7 @@ def _prepare(core: Core) -> CoreForm:
     dummies = _open_positions(core, mol)
     bare, open_atoms = _bare(mol, dummies)
     automorphisms = _self_matches(bare)
-    reporting, ipso = _reporting(core, bare, automorphisms)
+    reporting, ipso = _reporting(core, mol, bare, open_atoms, automorphisms)
     ring = _reporting_ring(bare, ipso, _place(core))
     frame = Frame(core, bare, open_atoms, reporting, ipso, ring, automorphisms)
     own = not is_lone_benzene(bare, ring) or (has_twin(frame) and core.parent_pka.known)

@@ -72,7 +72,11 @@ def main_component(mol: Mol, text: str, place: str, notes: list[str]) -> tuple[M
         return mol, list(range(mol.GetNumAtoms()))
     spelled = [Chem.MolToSmiles(p) for p in parts]
     main = [k for k, s in enumerate(spelled) if s not in COUNTER_IONS]
-    if len(main) != 1:
+    if not main:
+        raise StructureError(
+            f"'{short(text)}' holds counter-ions only", place=place, remedy="write the organic compound"
+        )
+    if len(main) > 1:
         raise StructureError(
             f"'{short(text)}' is a mixture of {len(parts)} components",
             place=place,
@@ -90,7 +94,7 @@ def refuse(mol: Mol, text: str, place: str, notes: list[str]) -> None:
         raise StructureError(
             f"'{short(text)}' contains {', '.join(foreign)}",
             place=place,
-            remedy="compounds of metals are not treated",
+            remedy="metals and rare elements are not treated",
         )
     if any(a.GetAtomicNum() == 0 for a in mol.GetAtoms()):
         raise StructureError(

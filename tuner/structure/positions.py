@@ -116,13 +116,31 @@ def _ring_neighbours(frame: Frame, atoms: Mapping[str, int], label: str) -> tupl
     return tuple(sorted((other for other, a in atoms.items() if a in near), key=label_order))
 
 
-def _open_slot(frame: Frame, label: str, rings: Mapping[int, int]) -> Slot:
+_Standing = tuple[str, float, float, str]
+"""Relation, transmission, its error, column."""
+
+
+def _standing(frame: Frame, atom: int) -> _Standing:
+    """How a position on an atom stands to the reporting group, by the structure alone."""
+    relation = _relation(frame, atom)
+    if relation == "remote":
+        return (relation, *remote_transmission(frame.bare, atom, frame.reporting, frame.ipso, frame.ring))
+    return relation, 1.0, 0.0, relation
+
+
+def _standing_of_twins(frame: Frame, atom: int) -> _Standing:
+    """The mean over the atoms that symmetry exchanges; relation and column are those next to the reporting
+    group."""
+    orbit = sorted({m[atom] for m in frame.automorphisms})
+    family = [_standing(frame, a) for a in orbit]
+    lead = next((f for f in family if f[0] != "remote"), family[0])
+    return lead[0], sum(f[1] for f in family) / len(family), max(f[2] for f in family), lead[3]
+
+
+def _open_slot(frame: Frame, label: str, rings: Mapping[int, int], shared: bool) -> Slot:
     """One open position, worked out and then overruled by what the author gave."""
     atom = frame.open_atoms[label]
-    relation = _relation(frame, atom)
-    tau, sd, column = 1.0, 0.0, relation
-    if relation == "remote":
-        tau, sd, column = remote_transmission(frame.bare, atom, frame.reporting, frame.ipso, frame.ring)
+    relation, tau, sd, column = (_standing_of_twins if shared else _standing)(frame, atom)
     ring = 0 if relation == "nitrogen" else rings.get(atom, -1)
     slot = Slot(label, relation, tau, sd, column, ring, ())
     given = frame.core.given_positions.get(label)
@@ -138,29 +156,6 @@ def _given(slot: Slot, given: Position) -> Slot:
         transmission_sd=given.transmission_sd,
         column=given.column or (given.relation if given.relation not in ("", "remote") else slot.column),
     )
-
-
-def _share_between_twins(frame: Frame, slots: list[Slot]) -> list[Slot]:
-    """Positions that symmetry exchanges get one relation and the mean transmission (given ones stay)."""
-    by_atom: dict[int, list[Slot]] = {}
-    for slot in slots:
-        by_atom.setdefault(frame.open_atoms[slot.label], []).append(slot)
-    shared = []
-    for slot in slots:
-        orbit = sorted({m[frame.open_atoms[slot.label]] for m in frame.automorphisms})
-        family = [s for a in orbit for s in by_atom.get(a, [])]
-        if slot.label in frame.core.given_positions or len(family) < 2:
-            shared.append(slot)
-            continue
-        lead = next((s for s in family if s.relation != "remote"), family[0])
-        mean = sum(s.transmission for s in family) / len(family)
-        error = max(s.transmission_sd for s in family)
-        shared.append(
-            replace(
-                slot, relation=lead.relation, column=lead.column, transmission=mean, transmission_sd=error
-            )
-        )
-    return shared
 
 
 def _ring_locants(frame: Frame) -> dict[int, str]:
@@ -228,13 +223,11 @@ def has_twin(frame: Frame) -> bool:
 def all_slots(frame: Frame, own_scaffold: bool) -> tuple[list[Slot], dict[str, frozenset[int]]]:
     """All slots of a core with their neighbours, open ones first."""
     rings = _ring_numbers(frame)
-    slots = [_open_slot(frame, label, rings) for label in frame.open_atoms]
+    shared = own_scaffold and has_twin(frame)
+    slots = [_open_slot(frame, label, rings, shared) for label in frame.open_atoms]
     fixed: list[Slot] = []
     fixed_atoms: dict[str, frozenset[int]] = {}
-    if own_scaffold:
-        if has_twin(frame):
-            slots = _share_between_twins(frame, slots)
-    else:
+    if not own_scaffold:
         fixed, fixed_atoms = _fixed_slots(frame)
     carriers = dict(frame.open_atoms)
     roots = {} if own_scaffold else _ring_locants(frame)
