@@ -12,6 +12,9 @@ from tuner.errors import LibraryError, TunerError
 YES = "yes"
 NO = "no"
 
+CLOSE_ENOUGH = 0.6
+"""Share of letters in common (difflib's ratio) from which a name is suggested; common practice, no source."""
+
 
 def nearest(text: str, options: Iterable[str]) -> str:
     """A remedy that names the option closest to `text`, or the first options where none is close.
@@ -20,16 +23,26 @@ def nearest(text: str, options: Iterable[str]) -> str:
     'did you mean "methoxy"?'
     """
     known = sorted(set(options))
-    folded: dict[str, str] = {}
-    for option in known:
-        folded.setdefault(option.casefold(), option)
-    close = get_close_matches(text.strip().casefold(), list(folded), n=1, cutoff=0.6)
+    close = closest(text, known)
     if close:
-        return f'did you mean "{folded[close[0]]}"?'
+        return f'did you mean "{close}"?'
     if not known:
         return "there is none to choose from"
     shown = ", ".join(known[:12])
     return f"known are {shown}" + (f" and {len(known) - 12} more" if len(known) > 12 else "")
+
+
+def closest(text: str, options: Iterable[str]) -> str:
+    """The option that is spelled most like `text`, case aside; "" where none is close.
+
+    >>> closest("Bormine", ["bromine", "iodine"])
+    'bromine'
+    """
+    folded: dict[str, str] = {}
+    for option in sorted(set(options)):
+        folded.setdefault(option.casefold(), option)
+    close = get_close_matches(text.strip().casefold(), list(folded), n=1, cutoff=CLOSE_ENOUGH)
+    return folded[close[0]] if close else ""
 
 
 def number(text: str, place: str, low: float, high: float, error: type[TunerError] = LibraryError) -> float:

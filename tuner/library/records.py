@@ -1,7 +1,7 @@
 """What does one row of a library hold?
 
-Frozen records that travel through every room. They carry no behaviour beyond look-ups, and know neither files nor
-molecules. A missing number is NaN and nothing else.
+Frozen records that travel through every room. They carry no behaviour beyond look-ups, and know neither files
+nor molecules. A missing number is NaN and nothing else.
 """
 
 from __future__ import annotations
@@ -72,7 +72,7 @@ class Substituent:
 
 @dataclass(frozen=True, slots=True)
 class Series:
-    """One reaction series: an acid-base equilibrium on an aromatic ring. A table of `libraries/series.toml`."""
+    """One acid-base equilibrium on an aromatic ring: a table of `libraries/series.toml`."""
 
     name: str
     title: str
@@ -103,8 +103,8 @@ class Position:
 class Core:
     """A chromophore whose substitution is to be chosen. A table of `libraries/cores.toml`.
 
-    In `smiles` each open position is `[*:n]`; `labels[n]` is its locant (default: str(n)). `reporting_smarts` picks the
-    reporting atom where more than one hydroxyl or amino group is present (first atom of the match).
+    In `smiles` each open position is `[*:n]`; `labels[n]` is its locant (default: str(n)). `reporting_smarts`
+    picks the reporting atom where more than one hydroxyl or amino group is present (first atom of the match).
     """
 
     name: str
@@ -141,7 +141,7 @@ class StockItem:
 
 @dataclass(frozen=True, slots=True)
 class MeasuredPka:
-    """One measured value with its printed source: a row of `libraries/measured_pka.csv` or of a user's file."""
+    """One measured value with its source: a row of `measured_pka.csv` or of a user's file."""
 
     name: str
     smiles: str

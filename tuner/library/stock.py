@@ -15,7 +15,7 @@ from pathlib import Path
 from typing import Protocol
 
 from tuner.errors import LibraryError, TunerError
-from tuner.library.checks import nearest, yes_or_no
+from tuner.library.checks import closest, nearest, yes_or_no
 from tuner.library.folders import data_folder
 from tuner.library.records import StockItem
 from tuner.library.tables import Row, read_csv, read_toml
@@ -40,17 +40,14 @@ class ReagentChoice(Protocol):
     @property
     def shelf(self) -> str:
         """Name of a shipped shelf, or path of a CSV."""
-        ...
 
     @property
     def include(self) -> tuple[str, ...]:
         """Names, SMILES or `role:NAME` to add."""
-        ...
 
     @property
     def exclude(self) -> tuple[str, ...]:
         """Names, SMILES or `role:NAME` to take away."""
-        ...
 
 
 def as_written(smiles: str, *, place: str = "") -> str:
@@ -60,6 +57,8 @@ def as_written(smiles: str, *, place: str = "") -> str:
 
 def read_roles(path: Path | None = None) -> dict[str, str]:
     """Role -> what it means, from the table `[roles]` of a reaction file (default: the shipped one)."""
+    if path is None and not (data_folder() / REACTIONS_FILE).is_file():
+        return {}
     table = read_toml(path or data_folder() / REACTIONS_FILE).table("roles")
     return {role: table.text(role) for role in table.values}
 
@@ -121,7 +120,7 @@ def _item(row: Row, known_roles: tuple[str, ...], canonical: Canonical) -> Stock
     """One row as a bottle."""
     roles = row.listing("roles")
     for role in roles:
-        if role not in known_roles:
+        if known_roles and role not in known_roles:
             remedy = nearest(role, known_roles)
             raise LibraryError(f'there is no role "{role}"', place=row.place("roles"), remedy=remedy)
     return StockItem(
@@ -218,5 +217,6 @@ def _meant(
         return (pool[smiles],)
     if smiles and may_be_new and canonical is not as_written:
         return (StockItem(name=smiles, smiles=smiles, roles=()),)
-    remedy = nearest(entry, [item.name for item in pool.values()]) + " A SMILES or role:NAME would do as well"
+    close = closest(entry, [item.name for item in pool.values()])
+    remedy = f'did you mean "{close}"?' if close else "write a name from the shelf, a SMILES or role:NAME"
     raise LibraryError(f'"{entry}" is no reagent that is known here', place=place, remedy=remedy)
