@@ -46,16 +46,26 @@ class Batch:
     score: FloatArray
 
 
+def roots(search: Search) -> list[Batch]:
+    """The empty prefix of every space, the first core on top."""
+    empty = np.zeros((1, 0), dtype=np.int64)
+    return [Batch(n, empty, np.zeros(1)) for n in reversed(range(len(search.spaces)))]
+
+
+def too_large(most_prefixes: int) -> SearchError:
+    """The error of a search that would not end."""
+    remedy = "limit the number of substituents or steps, or coarsen search.resolution_pka"
+    return SearchError(f"the bounds leave more than {most_prefixes:,} patterns open", remedy=remedy)
+
+
 class Tree:
     """The open prefixes of a search, the most promising on top, and the work on one batch of them."""
 
-    def __init__(self, search: Search, standing: Standing) -> None:
+    def __init__(self, search: Search, standing: Standing, start: list[Batch] | None = None) -> None:
         self.search = search
         self.standing = standing
         self.bounds = [SpaceBounds(tables, search.goal) for tables in search.spaces]
-        self.open = [
-            Batch(n, np.zeros((1, 0), dtype=np.int64), np.zeros(1)) for n in range(len(search.spaces))
-        ]
+        self.open = roots(search) if start is None else start
         self.bounded = 0
         self.visited = 0
 
@@ -77,6 +87,16 @@ class Tree:
             self.standing.offer(evaluate_admitted(tables, self.search.goal, children))
             return [], counted, len(children)
         return self._batches(batch.space, children, found.score[parent, choice]), counted, 0
+
+    def run(self, enough: int = 0) -> None:
+        """Work off the open batches here and now, until none is left or, if asked, `enough` are open."""
+        while self.open and not (enough and len(self.open) >= enough):
+            batches, bounded, visited = self.expand(self.open.pop())
+            self.open += batches
+            self.bounded += bounded
+            self.visited += visited
+            if self.bounded > MOST_PREFIXES:
+                raise too_large(MOST_PREFIXES)
 
     def _batches(self, space: int, children: Int64, score: FloatArray) -> list[Batch]:
         """Children in batches, the most promising last (they are taken from the end)."""
@@ -130,8 +150,5 @@ def search_certified(
             if progress is not None:
                 progress(STAGE, tree.bounded, 0)
             if tree.bounded > most_prefixes:
-                remedy = "limit the number of substituents or steps, or coarsen search.resolution_pka"
-                raise SearchError(
-                    f"the bounds leave more than {most_prefixes:,} patterns open", remedy=remedy
-                )
+                raise too_large(most_prefixes)
     return found(search, standing, tree.visited)

@@ -24,13 +24,17 @@ class Certificate:
 
     @property
     def text(self) -> str:
-        """One or two sentences for a reader."""
-        share = f"{self.covered:,} patterns are covered"
-        how = f"{self.visited:,} were looked at, the others shown by bounds to be no better"
+        """Two or three sentences for a reader. `visited` is left out: it varies with the number of
+        workers.
+        """
         exact = self.resolution_pka < 1e-6
         front = "exact" if exact else f"exact for offsets in steps of {self.resolution_pka:g} pKa units"
         rest = "" if self.bound == float("-inf") else f" No unlisted analog scores above {self.bound:.3f}."
-        return f"{share}: {how}. The trade-off front is {front}, the best by score exact.{rest}"
+        return (
+            f"All {self.covered:,} patterns are covered: each was evaluated, or an admissible bound shows "
+            f"that it is no better than what is listed. The trade-off front is {front}, the best by score "
+            f"exact.{rest}"
+        )
 
 
 @dataclass(frozen=True)
