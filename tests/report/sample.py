@@ -94,8 +94,8 @@ def sample_candidates() -> tuple[Candidate, ...]:
     )  # fmt: skip
     third = replace(second, rank=3, analog="x-3", steps=0, front=True, layer=1, smiles="Oc1ccccc1",
                     route=Route("Oc1ccccc1", ("phenol",), (), ("bottle is old",)))  # fmt: skip
-    fourth = replace(second, rank=4, analog="x-4", substitution=HOSTILE, core=HOSTILE, cautions=(HOSTILE,),
-                     notes=("=1+1",), offset=2.0, pka=8.4)  # fmt: skip
+    fourth = replace(second, rank=4, smiles="Oc1ccccc1C", analog="x-4", substitution=HOSTILE, core=HOSTILE,
+                     cautions=(HOSTILE,), notes=("=1+1",), offset=2.0, pka=8.4)  # fmt: skip
     return first, second, third, fourth
 
 

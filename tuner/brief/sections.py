@@ -59,7 +59,7 @@ def read_medium(table: BriefTable, base: Medium) -> Medium:
 
 
 def read_also(table: BriefTable, base: Medium) -> Target:
-    """One `[[also]]`: a further target in its own medium. Its margin may be 0 where the dye must not switch."""
+    """One `[[also]]`: a further target in its own medium; the margin may be 0 where it must not switch."""
     table.only(*SECTIONS["also"])
     role = table.one_word("role", ROLES, ROLES[0])
     if role == ROLES[0]:

@@ -30,7 +30,7 @@ def _record(candidate: Candidate, mol_block: str) -> str:
     body = mol_block.split(END_OF_BLOCK)[0].split("\n", 1)[1]
     lines = [candidate.analog + "\n" + body + END_OF_BLOCK]
     for column in COLUMNS:
-        text = written(column, candidate)
+        text = " ".join(written(column, candidate).split())
         if text:
             lines.append(f"> <{column.name}>\n{text}\n")
     return "\n".join(lines) + f"\n{RECORD_END}\n"
