@@ -110,10 +110,9 @@ class Microstates:
         shares = self.log_shares(np.array([ph]))[0]
         return np.asarray(self.protonated[int(np.argmax(shares))])
 
-    def stepwise_site(self, step: int) -> int:
-        """Which site mainly loses its proton in macroscopic step `step` (0 = the most acidic step).
-
-        The site whose mean occupation falls most between the states with k and with k - 1 protons.
+    def site_losses(self, step: int) -> FloatArray:
+        """How much of its proton each site loses in macroscopic step `step` (0 = most acidic), shape (n,),
+        sum 1.
         """
         count = self.protonated.sum(axis=1)
         k = self.n_sites - step
@@ -123,7 +122,11 @@ class Microstates:
             weight = 10.0 ** (self.log_beta[chosen] - self.log_beta[chosen].max())
             return np.asarray(weight @ self.protonated[chosen] / weight.sum())
 
-        return int(np.argmax(occupation(k) - occupation(k - 1)))
+        return np.asarray(occupation(k) - occupation(k - 1))
+
+    def stepwise_site(self, step: int) -> int:
+        """Which site mainly loses its proton in macroscopic step `step` (0 = the most acidic step)."""
+        return int(np.argmax(self.site_losses(step)))
 
 
 def all_states(n_sites: int) -> NDArray[np.int64]:

@@ -18,15 +18,15 @@ from tuner.brief.records import Medium
 from tuner.errors import TunerError
 from tuner.library.catalogue import Library
 from tuner.library.records import MeasuredPka
-from tuner.prediction.estimate import Estimator
-from tuner.prediction.held import HELD_PAIRS
+from tuner.prediction.estimate import Estimator, effect_of
+from tuner.prediction.held import AZO_PROTONATION, AZO_PROTONATION_RHO, HELD_PAIRS, NOT_MODELLED
 from tuner.prediction.ionisation import Ionisation
 from tuner.prediction.records import Prediction
 from tuner.prediction.ring_model import RingModel
 from tuner.prediction.sites import REPORTING_KINDS, SiteMaker, SiteTable
 from tuner.structure.charging import bonds_between, formal_charge
 from tuner.structure.dissect import dissect
-from tuner.structure.molecule import identity_key, read_molecule
+from tuner.structure.molecule import has_match, identity_key, read_molecule
 from tuner.structure.records import Dissection
 from tuner.structure.scaffolds import index_cores
 
@@ -36,6 +36,12 @@ CLOSE_SD = 0.15
 SCALE_PH = (-12.0, 16.0)
 """Constants outside this range are not given: no acidity scale in water reaches there."""
 WATER_PH = (0.0, 14.0)
+OWN_STEP = 0.75  # a step in which the reporting site loses more than this share of its proton is its own
+GOOD_PART = 0.35
+
+
+Steps = tuple[tuple[float, float, str], ...]
+"""(pKa, standard error, kind of site) of some macroscopic steps."""
 
 
 class MoleculeDoor:
@@ -87,6 +93,9 @@ class MoleculeDoor:
         if not found.sites or found.sites[0].kind not in REPORTING_KINDS:
             note = "no ionising phenol or aniline in this molecule"
             return Prediction(str(smiles), found.smiles, notes=(*found.notes, note))
+        for pattern, why in NOT_MODELLED:
+            if has_match(found.smiles, pattern):
+                return Prediction(str(smiles), found.smiles, notes=(*found.notes, why))
         return self._treated(str(smiles), found)
 
     def known(self, smiles: str) -> MeasuredPka | None:
@@ -120,30 +129,42 @@ class MoleculeDoor:
         if not ionisation.treatable:
             notes.append(f"{len(ionisation.free)} ionising groups; at most {MOST_SITES} are treated")
             return replace(answer, notes=tuple(dict.fromkeys(notes)))
-        return self._filled(answer, table, ionisation, notes)
+        return self._filled(answer, table, ionisation, notes, self._strong_acid_step(found))
+
+    def _strong_acid_step(self, found: Dissection) -> tuple[tuple[float, float, str], ...]:
+        """The azo group's own step in strong acid, for hydroxyazo dyes."""
+        lead = found.sites[0]
+        if lead.core not in AZO_PROTONATION:
+            return ()
+        pka, sd = AZO_PROTONATION[lead.core]
+        for group in lead.groups:
+            if group.label.endswith("'"):
+                record, _ = self.estimator.group(group.smiles)
+                pka -= AZO_PROTONATION_RHO * effect_of(record).para
+        return ((pka, sd, "azo"),)
 
     def _filled(
-        self, answer: Prediction, table: SiteTable, ionisation: Ionisation, notes: list[str]
+        self, answer: Prediction, table: SiteTable, ionisation: Ionisation, notes: list[str], extra: Steps
     ) -> Prediction:
         """Numbers of a treatable molecule."""
         states = ionisation.microstates()
         plain = ionisation.microstates(medium=False)
         place = ionisation.free.index(0)
-        macroscopic = ionisation.macroscopic(states)
-        pka = self._transition(answer, ionisation, states, place)
-        pka25 = self._transition(answer, ionisation, plain, place)
+        macroscopic = sorted((*ionisation.macroscopic(states), *extra))
+        pka, shared = self._transition(answer, ionisation, states, place)
+        pka25, _ = self._transition(answer, ionisation, plain, place)
+        notes += [shared] if shared else []
         charged = ionisation.charged_near(0, states, pka)
         around = table.evaluate[0](charged)
         sd = hypot(around.sd, table.ions[0].effect.sd)
         near = [s for k, s in enumerate(table.ions) if k and abs(s.pka - pka) < CLOSE_PKA and s.own is None]
         if near:
-            notes.append(
-                f"half charged at the transition: {', '.join(sorted({s.kind.replace('_', ' ') for s in near}))}"
-            )
+            kinds = sorted({s.kind.replace("_", " ") for s in near})
+            notes.append(f"half charged at the transition: {', '.join(kinds)}")
             sd = hypot(sd, CLOSE_SD)
         notes += _range_notes(pka)
         intercept, slope = table.ions[0].effect.temperature_line(ionisation.charge_around(0, states, pka))
-        inside = [(p, s) for p, s in macroscopic if SCALE_PH[0] <= p <= SCALE_PH[1]]
+        inside = [(p, s, k) for p, s, k in macroscopic if SCALE_PH[0] <= p <= SCALE_PH[1]]
         beyond = not SCALE_PH[0] <= pka <= SCALE_PH[1]
         return replace(
             answer,
@@ -151,24 +172,37 @@ class MoleculeDoor:
             pka_sd=nan if beyond else sd,
             pka25=nan if beyond else pka25,
             dpka_dt=nan if beyond else intercept + slope * pka,
-            macroscopic_pkas=tuple(p for p, _ in inside),
-            macroscopic_sds=tuple(s for _, s in inside),
+            macroscopic_pkas=tuple(p for p, _, _ in inside),
+            macroscopic_sds=tuple(s for _, s, _ in inside),
+            macroscopic_kinds=tuple(k for _, _, k in inside),
             terms=around.terms or answer.terms,
             notes=tuple(dict.fromkeys(notes)),
         )
 
     def _transition(
         self, answer: Prediction, ionisation: Ionisation, states: Microstates, place: int
-    ) -> float:
-        """pH of half ionisation of the reporting site; for two sites in one chromophore the step that
-        reports.
+    ) -> tuple[float, str]:
+        """pH of half ionisation of the reporting site, and a note where that needs one.
+
+        A site that shares its protons with an equal one (catechol, a sulfonephthalein's two arms) is half
+        ionised only between
+        two steps; what is seen then is a step, and the step is given: the one that the core's parent stands
+        for, else the
+        first in which the site takes a good part.
         """
+        steps = [float(p) for p in states.macroscopic_pkas()]
         if answer.core in HELD_PAIRS and (0, 1) in ionisation.pair_energies:
             wanted = ionisation.sites[0].pka
             if HELD_PAIRS[answer.core].parent_step == 2:
                 wanted += ionisation.pair_energies[0, 1]
-            return min((float(p) for p in states.macroscopic_pkas()), key=lambda p: abs(p - wanted))
-        return states.transition_ph([place])
+            return min(steps, key=lambda p: abs(p - wanted)), ""
+        part = [float(states.site_losses(k)[place]) for k in range(len(steps))]
+        if max(part) > OWN_STEP:
+            return states.transition_ph([place]), ""
+        first = next((k for k, share in enumerate(part) if share >= GOOD_PART), part.index(max(part)))
+        return steps[
+            first
+        ], "shares its proton with another group; the step in which it first takes part is given"
 
 
 def _known_values(measured: Iterable[MeasuredPka]) -> dict[str, MeasuredPka]:

@@ -1,12 +1,12 @@
-"""What happens to ionising groups that a core itself holds?
+"""Which ionising groups act together in ways that constants of single groups do not tell?
 
-Most cores hold one ionising group, the reporting one. Some hold two that share one chromophore
-(sulfonephthaleins,
-phthaleins, 1,8-dihydroxynaphthalene) or carry groups that are ionised at the transition and counted in the
-measured parent
-(fluorescein's carboxyl, the sulfonates of chromotropic acid dyes). This table says how these are treated; a
-core that is not
-listed and holds two equal groups is given two independent, equal ones.
+- Cores that hold two ionising groups in one chromophore (sulfonephthaleins, phthaleins,
+1,8-dihydroxynaphthalene).
+- Cores whose other groups are ionised at the transition and counted in the measured parent.
+- o,o'-Dihydroxyazo dyes: the two hydroxyls share a hydrogen bond with the azo group, which makes the first
+proton leave early and the
+  second late.
+- Hydroxyazo dyes also take up a proton at the azo group in strong acid.
 """
 
 from __future__ import annotations
@@ -47,3 +47,32 @@ report.
 
 COUNTED_IN_PARENT = ("fluorescein", "phenylazochromotropic acid")
 """Cores whose other groups are ionised at the transition; their charge is part of the measured parent."""
+
+DIHYDROXYAZO = "[OX2H1]-c:c-[NX2]=[NX2]-c:c-[OX2H1]"
+DIHYDROXYAZO_SHIFT = 1.6
+DIHYDROXYAZO_SD = 0.7
+"""o,o'-Dihydroxyazo dyes: both hydroxyls' pKa's fall by this much while the other holds its proton, and rise
+by as much above
+their own once it is gone. Sized on calcon-type dyes (Serjeant1979), rounded."""
+
+NOT_MODELLED: tuple[tuple[str, str], ...] = (
+    (
+        "Oc1c(N=Nc)ccc2ccc(N=Nc)c(O)c12",
+        "bis-azo dyes of 1,8-dihydroxynaphthalene have too many tautomers and hydrogen bonds for this model",
+    ),
+    (
+        "[OX2H1]c1c(N=Nc)ccc2cccc(N)c12",
+        "a nitrogen group beside the hydroxyl of an arylazo-naphthol (peri) binds its proton; not modelled",
+    ),
+    (
+        "[OX2H1]c1cccc2ccc(N=Nc)c(N)c12",
+        "a hydroxyl beside a nitrogen group that an azo group binds (peri); not modelled",
+    ),
+)
+"""Patterns of dyes that get no number, and why."""
+
+AZO_PROTONATION: dict[str, tuple[float, float]] = {"4-arylazophenol": (-1.3, 0.5)}
+"""pKa and standard error of the azo group of a bare hydroxyazo core, protonated in strong acid
+(Perrin1965).
+"""
+AZO_PROTONATION_RHO = 1.0

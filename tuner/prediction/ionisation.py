@@ -186,17 +186,17 @@ class Ionisation:
                 total += self.sites[f].charge_if_ionised
         return total
 
-    def macroscopic(self, states: Microstates) -> tuple[tuple[float, float], ...]:
-        """(pKa, standard error) of every step, ascending; always-ionised acids are listed with their own
-        constants.
+    def macroscopic(self, states: Microstates) -> tuple[tuple[float, float, str], ...]:
+        """(pKa, standard error, kind of site) of every step, ascending; always-ionised acids are listed with
+        their own constants.
         """
         pkas = states.macroscopic_pkas()
         found = []
         for step, pka in enumerate(pkas):
             site = self.sites[self.free[states.stepwise_site(step)]]
-            found.append((float(pka), hypot(site.sd, site.effect.sd)))
+            found.append((float(pka), hypot(site.sd, site.effect.sd), site.kind))
         n = len(self.fixed)
         for j, k in enumerate(self.fixed):
             statistical = log10((n - j) / (j + 1)) if n > 1 else 0.0
-            found.append((self.sites[k].pka - statistical, self.sites[k].sd))
+            found.append((self.sites[k].pka - statistical, self.sites[k].sd, self.sites[k].kind))
         return tuple(sorted(found))

@@ -53,6 +53,7 @@ class Prediction:
     dpka_dt : change of pKa' with temperature, per kelvin
     macroscopic_pkas : stepwise constants of the whole molecule in the medium, ascending
     macroscopic_sds : their standard errors
+    macroscopic_kinds : kind of the site that mainly loses its proton in each step
     sites : every ionising site, the reporting one first
     terms : the reporting site's pKa25 as a sum
     known : a measured value of this compound, if the library holds one
@@ -70,6 +71,7 @@ class Prediction:
     dpka_dt: float = nan
     macroscopic_pkas: tuple[float, ...] = ()
     macroscopic_sds: tuple[float, ...] = ()
+    macroscopic_kinds: tuple[str, ...] = ()
     sites: tuple[SitePrediction, ...] = ()
     terms: tuple[Term, ...] = ()
     known: MeasuredPka | None = None

@@ -12,7 +12,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import lru_cache
-from math import hypot, log10
+from math import hypot
 
 from tuner.library.catalogue import Library
 from tuner.library.folders import data_folder
@@ -35,6 +35,7 @@ ORTHO_FIELD = 2.4  # benzoic acids: fall per unit of field effect of an ortho gr
 ORTHO_BULK = 0.25  # fall for any ortho group that has a size, by twist out of the ring plane
 ORTHO_DONOR = 0.45  # fall for an ortho group that gives a hydrogen bond to the carboxylate
 ORTHO_ETHER = 0.75  # rise for an ortho ether, which takes the acid's hydrogen bond
+ORTHO_AMINO = 1.0  # rise for an ortho amino group, in place of the donor term
 """Set on 2-chloro-, 2-methyl-, 2-nitro-, 2-hydroxy- and 2-methoxybenzoic acid as remembered; common
 practice, no source.
 """
@@ -113,8 +114,6 @@ def _pull(smiles: str, estimator: Estimator) -> float:
 def side_pka(view: SiteView, site: SideSite, estimator: Estimator) -> tuple[float, float]:
     """pKa25 and standard error of a side site while the rest of the molecule is neutral."""
     pka, sd = site.series.parent_pka.value, site.series.parent_pka.sd
-    if site.second_step == site.second_step:
-        pass  # the table gives the constant of one of the two equal protons, statistical factor included
     for group in view.groups:
         relation = RING_LABELS.get(group.label, "")
         record, estimated = estimator.group(group.smiles)
@@ -142,9 +141,11 @@ def _ring_fall(group: Substituent, relation: str, site: SideSite, kind: str) -> 
         return rho * _known(column, group.field_effect), rho * 0.07
     if kind != "benzoic_acid":
         return rho * _known(group.sigma_para, group.field_effect), 0.35 * rho
+    amino = group.family == "amino" and group.charge == 0
     ether = group.family == "oxygen" and not group.hbond_donor and group.charge == 0
     fall = ORTHO_FIELD * group.field_effect + (ORTHO_BULK if group.bulk else 0.0)
-    fall += ORTHO_DONOR if group.hbond_donor else 0.0
+    fall += ORTHO_DONOR if group.hbond_donor and not amino else 0.0
+    fall -= ORTHO_AMINO if amino else 0.0
     fall -= ORTHO_ETHER if ether else 0.0
     return rho * fall, 0.35
 
@@ -152,6 +153,3 @@ def _ring_fall(group: Substituent, relation: str, site: SideSite, kind: str) -> 
 def _known(value: Value, otherwise: float) -> float:
     """The constant, or a stand-in where the table has none."""
     return value.value if value.known else otherwise
-
-
-STATISTICAL_TWO = log10(2.0)

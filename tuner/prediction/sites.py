@@ -9,20 +9,28 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
-from math import log10
+from math import hypot, log10
 
 from tuner.acidity.medium import medium_effect
 from tuner.brief.records import Medium
 from tuner.library.catalogue import Library
 from tuner.library.records import Series, Substituent
 from tuner.prediction.estimate import Estimator
-from tuner.prediction.held import COUNTED_IN_PARENT, HELD_OTHER, HELD_PAIRS
+from tuner.prediction.held import (
+    COUNTED_IN_PARENT,
+    DIHYDROXYAZO,
+    DIHYDROXYAZO_SD,
+    DIHYDROXYAZO_SHIFT,
+    HELD_OTHER,
+    HELD_PAIRS,
+)
 from tuner.prediction.ionisation import IonSite
 from tuner.prediction.records import SitePrediction, Term
 from tuner.prediction.ring_model import RingModel
 from tuner.prediction.side_sites import side_pka, side_site
 from tuner.prediction.words import substitution
 from tuner.structure.charging import charged_groups
+from tuner.structure.molecule import matches
 from tuner.structure.records import Dissection, SiteView
 from tuner.structure.scaffolds import CoreIndex
 
@@ -86,6 +94,7 @@ class SiteMaker:
             else:
                 self._add_side_site(made, view, medium)
         self._held_together(made, kept)
+        self._bridged_by_azo(made, kept, found.smiles)
         return made
 
     def _charge(self, view: SiteView) -> int:
@@ -191,6 +200,21 @@ class SiteMaker:
                     made.energies[i, j] = made.energies[j, i] = 0.0
                     if view.core in HELD_OTHER and other.kind == view.kind:
                         self._replace(made, j, *HELD_OTHER[view.core])
+
+    def _bridged_by_azo(self, made: SiteTable, kept: list[SiteView], smiles: str) -> None:
+        """Two hydroxyls ortho to one azo group."""
+        number = {view.reporting_atom: k for k, view in enumerate(kept) if view.kind == "phenol"}
+        pairs = {tuple(sorted((match[0], match[-1]))) for match in matches(smiles, DIHYDROXYAZO)}
+        done: set[int] = set()
+        for a, b in sorted(pairs):
+            i, j = number.get(a, -1), number.get(b, -1)
+            if i < 0 or j < 0 or {i, j} & done:
+                continue
+            done |= {i, j}
+            for k in (i, j):
+                sd = hypot(made.ions[k].sd, DIHYDROXYAZO_SD)
+                self._replace(made, k, made.ions[k].pka - DIHYDROXYAZO_SHIFT, sd, -DIHYDROXYAZO_SHIFT)
+            made.energies[i, j] = made.energies[j, i] = 2 * DIHYDROXYAZO_SHIFT
 
     def _pair(self, made: SiteTable, core: str, i: int, j: int) -> None:
         """Site i of two equal ones: its pKa beside a neutral partner, and the rise when the partner is
