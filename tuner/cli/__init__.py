@@ -26,6 +26,8 @@ def run(arguments: Sequence[str] | None = None) -> int:
     try:
         code = app(args=None if arguments is None else list(arguments), standalone_mode=False)
         sys.stdout.flush()
+        if code == EXIT_INTERRUPTED:  # the command parser turns an interruption into this code
+            raise KeyboardInterrupt
         return code if isinstance(code, int) else EXIT_OK
     except TunerError as fault:
         return _fault(fault.text)
