@@ -62,7 +62,7 @@ def number(text: str, place: str, low: float, high: float, error: type[TunerErro
 def in_range(
     value: float, place: str, low: float, high: float, error: type[TunerError] = LibraryError
 ) -> float:
-    """`value` where it is finite and within [low, high]; `error` otherwise."""
+    """`value` (in the unit of the limits) where it is finite and within [low, high]; `error` otherwise."""
     if not math.isfinite(value) or not low <= value <= high:
         raise error(f"{value:g} is out of range", place=place, remedy=_range_words(low, high))
     return value
