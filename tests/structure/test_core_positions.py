@@ -146,6 +146,33 @@ def test_twin_arms_are_treated_alike() -> None:
     assert one_arm.slot("3'").transmission == one.transmission  # the other arm takes its share all the same
 
 
+def test_twin_arms_share_what_was_given() -> None:
+    arms = "Oc1c([*:2])cc(C2(c3cc([*:12])c(O)cc3)OS(=O)(=O)c3ccccc32)cc1"
+    labels = {2: "3'", 12: "3''"}
+    given = {"3''": Position("3''", "remote", 0.6, 0.05, "ortho", True)}
+    core = _core(arms, labels=labels, parent_pka=Value(8.0, 0.1), given_positions=given)
+    one, other = (prepare_core(core).slot(label) for label in ("3'", "3''"))
+    assert (one.relation, one.transmission, one.column) == ("ortho", 0.6, "ortho")
+    assert (other.relation, other.transmission, other.column) == ("ortho", 0.6, "ortho")
+    assert one.ring != other.ring  # groups on different arms are not on one ring
+    quarrel = given | {"3'": Position("3'", "ortho", 0.7, 0.05, "ortho", True)}
+    with pytest.raises(StructureError, match="described differently"):
+        prepare_core(_core(arms, labels=labels, parent_pka=Value(8.0, 0.1), given_positions=quarrel))
+
+
+def test_symmetric_positions_of_shipped_cores_act_alike(cores: Mapping[str, Core]) -> None:
+    for core in cores.values():
+        prepared = prepare_core(core)
+        for perm in prepared.symmetry:
+            for k, label in enumerate(prepared.open_labels):
+                one, other = prepared.slot(label), prepared.slot(prepared.open_labels[perm[k]])
+                assert (one.relation, one.transmission, one.column) == (
+                    other.relation,
+                    other.transmission,
+                    other.column,
+                )
+
+
 def test_the_author_has_the_last_word() -> None:
     given = {"4'": Position("4'", "remote", 0.45, 0.02, "para_minus", True)}
     slot = prepare_core(_core(AZO, labels=AZO_LABELS, given_positions=given)).slot("4'")

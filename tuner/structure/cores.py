@@ -19,7 +19,8 @@ Rules
   Positions on the reporting nitrogen have ring 0.
 - Where the symmetry exchanges reporting groups, equivalent positions share one transmission, the mean of
   the two.
-- What the author gives in `given_positions` wins over all of this.
+- What the author gives in `given_positions` wins over all of this; given for one of several positions that
+  symmetry exchanges (twin arms), it holds for all of them.
 """
 
 from __future__ import annotations

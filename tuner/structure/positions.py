@@ -13,6 +13,7 @@ from typing import Any
 
 from rdkit import Chem
 
+from tuner.errors import StructureError
 from tuner.library.records import Core, Position
 from tuner.structure.groups import spell_group
 from tuner.structure.records import Slot
@@ -158,6 +159,28 @@ def _given(slot: Slot, given: Position) -> Slot:
     )
 
 
+def _like_its_twins(frame: Frame, slot: Slot, slots: list[Slot]) -> Slot:
+    """What the author gave for one of several positions that symmetry exchanges holds for all of them."""
+    orbit = {m[frame.open_atoms[slot.label]] for m in frame.automorphisms}
+    family = [s for s in slots if frame.open_atoms[s.label] in orbit]
+    given = [s for s in family if s.label in frame.core.given_positions]
+    if not given:
+        return slot
+    lead = given[0]
+    for other in given[1:]:
+        if (other.transmission, other.column) != (lead.transmission, lead.column):
+            raise StructureError(
+                f"positions {lead.label} and {other.label} are equal by symmetry but described differently",
+                place=f"core '{frame.core.name}'",
+                remedy="give both the same transmission and column",
+            )
+    relation = next((s.relation for s in family if s.relation != "remote"), slot.relation)
+    error = max(s.transmission_sd for s in given)
+    return replace(
+        slot, relation=relation, transmission=lead.transmission, transmission_sd=error, column=lead.column
+    )
+
+
 def _ring_locants(frame: Frame) -> dict[int, str]:
     """Locants of all atoms of a lone reporting ring, guessed from those of its open positions."""
     ring = frame.ring
@@ -225,6 +248,8 @@ def all_slots(frame: Frame, own_scaffold: bool) -> tuple[list[Slot], dict[str, f
     rings = _ring_numbers(frame)
     shared = own_scaffold and has_twin(frame)
     slots = [_open_slot(frame, label, rings, shared) for label in frame.open_atoms]
+    if shared:
+        slots = [_like_its_twins(frame, slot, slots) for slot in slots]
     fixed: list[Slot] = []
     fixed_atoms: dict[str, frozenset[int]] = {}
     if not own_scaffold:
