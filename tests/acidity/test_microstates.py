@@ -115,6 +115,28 @@ def test_a_cycle_that_does_not_close_is_shared_out() -> None:
     assert from_table(step, 2).log_beta[-1] == pytest.approx(14.0 - 1.5, abs=NUMERIC)
 
 
+def test_a_cycle_is_shared_out_from_the_reference_state_given() -> None:
+    def step(site: int, others: tuple[int, ...]) -> float:
+        rise = 2.0 if site == 0 else 3.0  # pKa 9.7 beside a neutral acid, more beside its anion
+        return 9.7 + rise * (1 - others[1 - site])
+
+    steps = from_table(step, 2, (1, 1)).macroscopic_pkas()
+    # equal sites in the reference state: the first step is 9.7 - log10(2), the second 9.7 + 2.5 + log10(2)
+    np.testing.assert_allclose(steps, [9.7 - log10(2.0), 12.2 + log10(2.0)], atol=NUMERIC)
+
+
+def test_the_reference_does_not_matter_where_cycles_close() -> None:
+    intrinsic = np.array([4.0, 7.0, 9.5])
+    coupling = np.array([[0.0, -1.0, -0.3], [-1.0, 0.0, 0.4], [-0.3, 0.4, 0.0]])
+
+    def step(site: int, others: tuple[int, ...]) -> float:
+        return float(intrinsic[site] + sum(coupling[site, j] * others[j] for j in range(3) if j != site))
+
+    base = from_table(step, 3).log_beta
+    for reference in ((1, 1, 1), (0, 1, 0), (1, 0, 1)):
+        np.testing.assert_allclose(from_table(step, 3, reference).log_beta, base, atol=NUMERIC)
+
+
 def test_extreme_constants_do_not_overflow() -> None:
     states = from_pairs(np.array([-300.0, 400.0]), np.zeros((2, 2)))
     np.testing.assert_allclose(states.macroscopic_pkas(), [-300.0, 400.0], atol=NUMERIC)

@@ -134,17 +134,22 @@ def all_states(n_sites: int) -> NDArray[np.int64]:
     return np.array(list(product((0, 1), repeat=n_sites)), dtype=np.int64).reshape(-1, n_sites)
 
 
-def from_table(intrinsic: Callable[[int, tuple[int, ...]], float], n_sites: int) -> Microstates:
+def from_table(
+    intrinsic: Callable[[int, tuple[int, ...]], float],
+    n_sites: int,
+    reference: tuple[int, ...] | None = None,
+) -> Microstates:
     """Microstates from intrinsic constants that depend on the states of the other sites.
 
     Parameters
     ----------
     intrinsic : callable
         `intrinsic(site, others)` gives the microscopic pKa of `site` with the other sites in the states
-        `others`
-        (length n, the entry of `site` itself is ignored).
+        `others` (length n, the entry of `site` itself is ignored).
     n_sites : int
         1 to 10.
+    reference : tuple of 0 and 1, length n
+        The state from which the others are built up, site by site; fully deprotonated unless given.
 
     Returns
     -------
@@ -152,11 +157,11 @@ def from_table(intrinsic: Callable[[int, tuple[int, ...]], float], n_sites: int)
 
     Notes
     -----
-    A thermodynamic cycle must close: protonating A then B costs what B then A costs. Constants estimated
-    site by site do not
-    quite do so; each state's formation constant is therefore the mean over all orders of protonation, worked
-    out layer by layer
-    (the mean over the last site protonated of the mean before it), which spreads the misclosure evenly.
+    A thermodynamic cycle must close: protonating A then B costs what B then A costs. Constants estimated site
+    by site do not quite do so; each state's formation constant is therefore the mean over all orders in which
+    the sites leave the reference state, worked out layer by layer, which spreads the misclosure evenly. Take
+    as
+    reference the state in which the constants are surest.
 
     Raises
     ------
@@ -175,16 +180,20 @@ def from_table(intrinsic: Callable[[int, tuple[int, ...]], float], n_sites: int)
     """
     if not 1 <= n_sites <= MOST_SITES:
         raise ValueError(f"{n_sites} ionising sites; 1 to {MOST_SITES} can be treated")
+    start = reference if reference is not None else (0,) * n_sites
     states = all_states(n_sites)
     row = {tuple(int(v) for v in state): i for i, state in enumerate(states)}
     log_beta = np.zeros(len(states))
-    for state in sorted(row, key=sum):
-        held = [s for s in range(n_sites) if state[s]]
-        if held:
-            before = [tuple(v if i != s else 0 for i, v in enumerate(state)) for s in held]
-            steps = [log_beta[row[b]] + intrinsic(s, b) for s, b in zip(held, before, strict=True)]
+    for state in sorted(row, key=lambda s: sum(a != b for a, b in zip(s, start, strict=True))):
+        changed = [s for s in range(n_sites) if state[s] != start[s]]
+        if changed:
+            before = [tuple(start[i] if i == s else v for i, v in enumerate(state)) for s in changed]
+            sign = [1.0 if state[s] else -1.0 for s in changed]
+            steps = [
+                log_beta[row[b]] + g * intrinsic(s, b) for s, b, g in zip(changed, before, sign, strict=True)
+            ]
             log_beta[row[state]] = float(np.mean(steps))
-    return Microstates(states, log_beta)
+    return Microstates(states, log_beta - log_beta[row[(0,) * n_sites]])
 
 
 def from_pairs(intrinsic: FloatArray, interaction: FloatArray) -> Microstates:

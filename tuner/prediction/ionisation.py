@@ -164,7 +164,8 @@ class Ionisation:
             )
             return float(self.sites[k].effect.shift(np.array(pka), np.array(float(charge))))
 
-        return from_table(step, len(self.free))
+        neutral = tuple(0 if self.sites[f].charge_if_ionised > 0 else 1 for f in self.free)
+        return from_table(step, len(self.free), neutral)
 
     @property
     def pair_energies(self) -> Mapping[tuple[int, int], float]:
