@@ -1,7 +1,7 @@
 """Which cores can a molecule be seen as, and what does every phenol or aniline fall back on?
 
-`SCAFFOLDS` are the two lone benzene rings with everything open; a molecule whose reporting ring no larger
-core fits is seen as one of them. `index_cores` prepares a library of cores once for all molecules.
+`SCAFFOLD_CORES` are the two lone benzene rings with everything open; a molecule whose reporting ring no
+larger core fits is seen as one of them. `index_cores` prepares a library of cores once for all molecules.
 """
 
 from __future__ import annotations
