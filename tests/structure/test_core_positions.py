@@ -42,6 +42,12 @@ def test_aniline_with_open_nitrogen() -> None:
     assert prepared.symmetry == ((0, 1, 2), (0, 2, 1))
 
 
+def test_of_a_diarylamine_the_open_ring_reports() -> None:
+    prepared = prepare_core(_core("[*:9]N(c1ccccc1)c1ccc([*:4])cc1", "anilinium", labels={9: "N"}))
+    assert prepared.slot("4").relation == "para"
+    assert prepared.slot("N'").fixed == "*c1ccccc1"
+
+
 def test_view_of_a_lone_ring_has_fixed_slots() -> None:
     prepared = prepare_core(_core(AZO, labels=AZO_LABELS))
     assert prepared.scaffold == "phenol"

@@ -155,7 +155,8 @@ def _reporting(
             remedy="pick one with reporting_smarts (first atom of the pattern; an open position is [#0])",
         )
     atom = bare.GetAtomWithIdx(found[0])
-    carriers = sorted(n.GetIdx() for n in atom.GetNeighbors() if n.GetIsAromatic())
+    carriers = [n.GetIdx() for n in atom.GetNeighbors() if n.GetIsAromatic()]
+    carriers.sort(key=lambda c: (-_open_around(bare, c, carried), c))
     if not carriers or atom.GetAtomicNum() not in (7, 8):
         raise StructureError(
             "the reporting atom is no O or N on an aromatic carbon",
@@ -163,6 +164,11 @@ def _reporting(
             remedy="correct reporting_smarts",
         )
     return found[0], carriers[0]
+
+
+def _open_around(bare: Mol, carrier: int, carried: list[int]) -> int:
+    """How many open positions lie on the rings of a carrier: the open ring of a diarylamine reports."""
+    return sum(a in ring for ring in bare.GetRingInfo().AtomRings() if carrier in ring for a in carried)
 
 
 def _reporting_ring(bare: Mol, ipso: int, place: str) -> tuple[int, ...]:
