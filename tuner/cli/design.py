@@ -39,7 +39,7 @@ def _make(
 ) -> tuple[DesignResult, tuple[Path, ...]]:
     """Search and write."""
     from tuner.cli.exhibits import exhibits_of
-    from tuner.search import design
+    from tuner.search.run import design
 
     with progress(quiet) as report, placed_in(brief):
         result = design(brief, progress=report, scheduler=scheduler)
