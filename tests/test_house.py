@@ -318,6 +318,12 @@ def asserts(node: ast.FunctionDef) -> bool:
     return False
 
 
+def test_no_two_test_files_share_a_name() -> None:
+    # without packages in tests/, pytest tells test modules apart by their bare names
+    names = [path.name for path in TEST_FILES if path.name != "conftest.py"]
+    assert sorted({name for name in names if names.count(name) > 1}) == []
+
+
 def test_the_top_of_the_repository_is_tidy() -> None:
     if not (ROOT / ".git").exists():  # an unpacked source archive holds less
         assert (ROOT / "tuner").is_dir()
