@@ -7,10 +7,10 @@ import io
 from pathlib import Path
 
 import pytest
-from fuzz_readers import fuzz, outcome
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
+from tests.library.fuzz_readers import fuzz, outcome
 from tuner.errors import LibraryError
 from tuner.library.checks import closest, nearest
 from tuner.library.load import read_own_measured
