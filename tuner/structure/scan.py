@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
+from functools import lru_cache
+
 from rdkit import Chem
 
 from tuner.errors import StructureError
 from tuner.structure.molecule import parse, read_smarts
 
 
+@lru_cache(maxsize=65536)
 def pattern_counts(smiles: str, patterns: tuple[str, ...], *, place: str = "") -> tuple[int, ...]:
     """Number of different places (sets of atoms) at which each SMARTS pattern matches a structure as written.
 
@@ -15,7 +18,8 @@ def pattern_counts(smiles: str, patterns: tuple[str, ...], *, place: str = "") -
     ----------
     smiles : str
     patterns : tuple of str
-        SMARTS; each is compiled once and kept.
+        SMARTS; each is compiled once and kept, and so is the answer: the groups of a space come up again and
+        again.
 
     Raises
     ------
