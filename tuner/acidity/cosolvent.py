@@ -35,9 +35,6 @@ PERMITTIVITY: dict[str, tuple[float, ...]] = {
 }
 """Relative permittivity of water-cosolvent mixtures at `MASS_PERCENT`, 25 degC."""
 
-HIGHEST_MASS_PERCENT = 80.0
-"""Beyond this neither the table nor the estimate holds."""
-
 BORN_COEFFICIENT = 190.0
 """pKa units per unit of (1/permittivity); 2 * 121.8 Angstrom / r at 25 degC with an effective ion radius r
 of 1.28 Angstrom.

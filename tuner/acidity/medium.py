@@ -12,9 +12,16 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 from math import log, sqrt
 
-from tuner.acidity.cosolvent import HIGHEST_MASS_PERCENT, PERMITTIVITY, cosolvent_shift
+from tuner.acidity.cosolvent import PERMITTIVITY, cosolvent_shift
 from tuner.acidity.tables import FloatArray, PairwiseSum
-from tuner.brief.records import Medium
+from tuner.brief.records import (
+    COSOLVENT_LIMIT_MASS_PERCENT,
+    IONIC_STRENGTH_LIMIT_M,
+    OFFSET_LIMIT,
+    SURFACE_POTENTIAL_LIMIT_MV,
+    TEMPERATURE_LIMITS_C,
+    Medium,
+)
 from tuner.errors import BriefError
 from tuner.library.records import Series
 
@@ -23,15 +30,11 @@ FARADAY_KJ_MV = 9.648533212e-2  # kJ/(mol mV), CODATA 2018
 REFERENCE_K = 298.15
 ZERO_C_K = 273.15
 
-TEMPERATURE_LIMITS_C = (0.0, 100.0)  # outside: refused
 TEMPERATURE_FITTED_C = (0.0, 60.0)  # range of the series behind the enthalpies
-IONIC_STRENGTH_LIMIT_M = 3.0  # beyond: refused, no activity model of this kind says anything
 IONIC_STRENGTH_VALID_M = 0.5  # beyond: a note and a wider error
 DAVIES_COEFFICIENT = 0.3  # Davies, Ion Association, 1962 (0.2 in the 1938 paper)
 DAVIES_SD_PER_M = 0.1  # pKa units per mol/L beyond the valid range; common practice, no source
 DEBYE_HUCKEL_A_25 = 0.509  # (kg/mol)^0.5, the value customary in pKa work
-SURFACE_POTENTIAL_LIMIT_MV = 300.0
-OFFSET_LIMIT = 6.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -291,9 +294,10 @@ def require_valid(medium: Medium, place: str = "") -> None:
             place=place,
             remedy=f"one of {', '.join(sorted(PERMITTIVITY))}",
         )
-    if not 0.0 <= medium.cosolvent_mass_percent <= HIGHEST_MASS_PERCENT:
+    highest = COSOLVENT_LIMIT_MASS_PERCENT
+    if not 0.0 <= medium.cosolvent_mass_percent <= highest:
         raise BriefError(
-            f"cosolvent {medium.cosolvent_mass_percent:g} % by mass is outside 0 to {HIGHEST_MASS_PERCENT:g}",
+            f"cosolvent {medium.cosolvent_mass_percent:g} % by mass is outside 0 to {highest:g}",
             place=place,
             remedy="for richer mixtures give a measured offset instead",
         )

@@ -6,10 +6,23 @@ from dataclasses import dataclass
 from math import inf
 from pathlib import Path
 
+TEMPERATURE_LIMITS_C = (0.0, 100.0)
+"""Water is a liquid here; outside, a brief is refused."""
+IONIC_STRENGTH_LIMIT_M = 3.0
+"""Beyond this (mol/L) no activity model of the kind used here says anything."""
+COSOLVENT_LIMIT_MASS_PERCENT = 80.0
+"""Beyond this neither the tabulated permittivities nor the estimate of the shift hold."""
+OFFSET_LIMIT = 6.0
+"""Largest measured shift (pKa units) that is taken for one."""
+SURFACE_POTENTIAL_LIMIT_MV = 300.0
+"""Largest surface potential (mV) that is taken for one."""
+
 
 @dataclass(frozen=True, slots=True)
 class Medium:
-    """The working medium. Ranges of validity are checked where the relations stand (`acidity.medium`)."""
+    """The working medium. What is refused stands above; ranges of doubt stand with the relations themselves
+    (`acidity.medium`).
+    """
 
     temperature_c: float = 25.0
     ionic_strength_m: float = 0.0

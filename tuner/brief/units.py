@@ -10,6 +10,13 @@ from collections.abc import Callable
 from dataclasses import dataclass
 from math import isfinite
 
+from tuner.brief.records import (
+    COSOLVENT_LIMIT_MASS_PERCENT,
+    IONIC_STRENGTH_LIMIT_M,
+    OFFSET_LIMIT,
+    SURFACE_POTENTIAL_LIMIT_MV,
+    TEMPERATURE_LIMITS_C,
+)
 from tuner.brief.table import BriefTable
 
 ZERO_C_K = 273.15
@@ -32,7 +39,11 @@ def _kelvin(value: float) -> str:
 
 
 def _millimolar(value: float) -> str:
-    return f"if this is mmol/L, write {value / 1000.0:g}" if 3.0 < value <= 3000.0 else ""
+    return (
+        f"if this is mmol/L, write {value / 1000.0:g}"
+        if IONIC_STRENGTH_LIMIT_M < value <= 1000.0 * IONIC_STRENGTH_LIMIT_M
+        else ""
+    )
 
 
 def _fraction(value: float) -> str:
@@ -55,19 +66,23 @@ def _tolerance(value: float) -> str:
     return "it is the half width of the window in pH units, not per cent" if value > 3.0 else ""
 
 
-def _kilojoule_free(value: float) -> str:
-    return "an offset is in pKa units; a potential goes to surface_potential_mv" if abs(value) > 6.0 else ""
+def _beyond_offset(value: float) -> str:
+    return (
+        "an offset is in pKa units; a potential goes to surface_potential_mv"
+        if abs(value) > OFFSET_LIMIT
+        else ""
+    )
 
 
 PH = Quantity(-10.0, 16.0, "a pH; below 0 it is an acidity function")
 TOLERANCE = Quantity(0.01, 3.0, "pH units", _tolerance)
 MARGIN = Quantity(0.0, 3.0, "pH units", _tolerance)
-TEMPERATURE = Quantity(0.0, 100.0, "degC", _kelvin)
-IONIC_STRENGTH = Quantity(0.0, 3.0, "mol/L", _millimolar)
-COSOLVENT = Quantity(0.0, 80.0, "per cent by mass", _fraction)
-OFFSET = Quantity(-6.0, 6.0, "pKa units", _kilojoule_free)
-OFFSET_SD = Quantity(0.0, 3.0, "pKa units")
-POTENTIAL = Quantity(-300.0, 300.0, "mV", _volt)
+TEMPERATURE = Quantity(*TEMPERATURE_LIMITS_C, "degC", _kelvin)
+IONIC_STRENGTH = Quantity(0.0, IONIC_STRENGTH_LIMIT_M, "mol/L", _millimolar)
+COSOLVENT = Quantity(0.0, COSOLVENT_LIMIT_MASS_PERCENT, "per cent by mass", _fraction)
+OFFSET = Quantity(-OFFSET_LIMIT, OFFSET_LIMIT, "pKa units", _beyond_offset)
+OFFSET_SD = Quantity(0.0, OFFSET_LIMIT, "pKa units")
+POTENTIAL = Quantity(-SURFACE_POTENTIAL_LIMIT_MV, SURFACE_POTENTIAL_LIMIT_MV, "mV", _volt)
 MOLAR_MASS = Quantity(90.0, 5000.0, "g/mol", _kilogram)
 CLOGP = Quantity(-20.0, 30.0, "logarithm of the octanol-water ratio")
 TPSA = Quantity(0.0, 1000.0, "square angstrom")
