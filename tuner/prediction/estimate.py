@@ -127,6 +127,14 @@ class Estimator:
         """Field effect of a group (dimensionless)."""
         return self._estimate(canonical_group(smiles)).effect.field
 
+    def relative_field(self, smiles: str) -> float:
+        """Field effect of the tabulated relative that a group's estimate is built on; its own where there is
+        none.
+        """
+        made = self._estimate(canonical_group(smiles))
+        relative = self._library.find_by_smiles(made.relative) if made.relative else None
+        return effect_of(relative).field if relative is not None else made.effect.field
+
     def _record(self, text: str) -> Substituent:
         """An estimate as a library record."""
         made = self._estimate(text)

@@ -27,12 +27,15 @@ from tuner.acidity.microstates import MOST_SITES, Microstates, from_table
 
 ALWAYS_IONISED = ("benzenesulfonic_acid", "sulfonic_acid")
 
-NEAREST_BONDS, NEAREST_ENERGY = 3, 2.3
+NEAREST_BONDS, NEAREST_ENERGY = 3, 2.1
 """pKa units between two charges three bonds apart (glycine, 1,2-diaminoethane), as remembered; half of it
 per further bond.
 """
 ENERGY_FALL_PER_BOND = 0.5
 FARTHEST_BONDS = 9
+
+CARBOXYLS_ON_A_RING = {5: 1.8, 6: 0.45, 7: 0.45}
+"""pKa units by the number of bonds: phthalic, isophthalic and terephthalic acid, as remembered."""
 
 EXACT_SITES = 6
 """Up to this many sites a phenol or aniline is evaluated for every set of charges; beyond, energies add in
@@ -65,7 +68,7 @@ def distance_energy(bonds: int) -> float:
     Examples
     --------
     >>> distance_energy(3), distance_energy(4), distance_energy(12)
-    (2.3, 1.15, 0.0)
+    (2.1, 1.05, 0.0)
     """
     if bonds > FARTHEST_BONDS:
         return 0.0
@@ -124,7 +127,10 @@ class Ionisation:
             # linkage: what i's charge does to j, j's does to i; of opposite sign for an acid and a base
             felt = self._own(j, frozenset({i})) - self._own(j, frozenset())
             return felt * self.sites[i].charge_if_ionised * self.sites[j].charge_if_ionised
-        return -self.sites[j].charge_if_ionised * distance_energy(self._bonds(i, j))
+        size = distance_energy(self._bonds(i, j))
+        if self.sites[i].kind == self.sites[j].kind == "benzoic_acid":
+            size = CARBOXYLS_ON_A_RING.get(self._bonds(i, j), size)
+        return -self.sites[j].charge_if_ionised * size
 
     def pka25(self, i: int, charged: frozenset[int]) -> float:
         """pKa25 of site i while the sites in `charged` are ionised."""

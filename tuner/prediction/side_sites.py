@@ -19,7 +19,7 @@ from tuner.library.folders import data_folder
 from tuner.library.records import Series, Substituent, Value
 from tuner.library.tables import read_csv
 from tuner.prediction.estimate import Estimator
-from tuner.structure.anatomy import anatomy
+from tuner.structure.anatomy import Anatomy, anatomy
 from tuner.structure.records import SiteView
 
 SIDE_SITES_FILE = "side_sites.csv"
@@ -29,12 +29,14 @@ COLUMNS = (
 )  # fmt: skip
 
 CHAIN_ATTENUATION = 0.4  # per saturated carbon
+FAR_SHARE = 0.5
 RING_LABELS = {"2": "ortho", "6": "ortho", "3": "meta", "5": "meta", "4": "para"}
 
 ORTHO_FIELD = 2.4  # benzoic acids: fall per unit of field effect of an ortho group, on top of rho * 0
 ORTHO_BULK = 0.25  # fall for any ortho group that has a size, by twist out of the ring plane
 ORTHO_DONOR = 0.45  # fall for an ortho group that gives a hydrogen bond to the carboxylate
 ORTHO_ETHER = 0.75  # rise for an ortho ether, which takes the acid's hydrogen bond
+BOTH_ORTHO_HYDROXYL = 0.65  # further fall where two hydroxyls bind the carboxylate
 ORTHO_AMINO = 1.0  # rise for an ortho amino group, in place of the donor term
 """Set on 2-chloro-, 2-methyl-, 2-nitro-, 2-hydroxy- and 2-methoxybenzoic acid as remembered; common
 practice, no source.
@@ -95,20 +97,28 @@ def chain_effect(smiles: str, estimator: Estimator) -> float:
     0.4 times the sum of the field effects on the first carbon; a further saturated carbon takes another
     factor 0.4.
     """
-    built = anatomy(smiles)
-    plain_carbon = built.symbol == "C" and built.entry_charge == 0 and not built.ring
-    if plain_carbon and all(b.order == 1 for b in built.branches):
-        return CHAIN_ATTENUATION * sum(_pull(b.smiles, estimator) for b in built.branches)
-    return CHAIN_ATTENUATION * estimator.field(smiles)
+    if _saturated_carbon(anatomy(smiles)):
+        return CHAIN_ATTENUATION * sum(_pull(b.smiles, estimator) for b in anatomy(smiles).branches)
+    return CHAIN_ATTENUATION * _damped_field(smiles, estimator)
+
+
+def _saturated_carbon(built: Anatomy) -> bool:
+    """Whether a group begins with a neutral saturated carbon."""
+    plain = built.symbol == "C" and built.entry_charge == 0 and not built.ring
+    return plain and all(b.order == 1 for b in built.branches)
+
+
+def _damped_field(smiles: str, estimator: Estimator) -> float:
+    """Field effect of a ring, vinyl group and the like; what these carry counts by half."""
+    near = estimator.relative_field(smiles)
+    return near + FAR_SHARE * (estimator.field(smiles) - near)
 
 
 def _pull(smiles: str, estimator: Estimator) -> float:
     """Field effect of one piece on the first carbon; saturated carbon counts only for what it carries."""
-    built = anatomy(smiles)
-    saturated = built.symbol == "C" and not built.ring and all(b.order == 1 for b in built.branches)
-    if saturated and built.entry_charge == 0:
+    if _saturated_carbon(anatomy(smiles)):
         return chain_effect(smiles, estimator)
-    return estimator.field(smiles)
+    return _damped_field(smiles, estimator)
 
 
 def side_pka(view: SiteView, site: SideSite, estimator: Estimator) -> tuple[float, float]:
@@ -124,6 +134,9 @@ def side_pka(view: SiteView, site: SideSite, estimator: Estimator) -> tuple[floa
             doubt = 0.15 * abs(fall)
         pka -= fall
         sd = hypot(sd, doubt, 0.1 if estimated else 0.0)
+    donors = [g for g in view.groups if RING_LABELS.get(g.label) == "ortho" and g.smiles == "*O"]
+    if view.kind == "benzoic_acid" and len(donors) == 2:
+        pka -= BOTH_ORTHO_HYDROXYL
     return pka, sd
 
 
@@ -140,7 +153,7 @@ def _ring_fall(group: Substituent, relation: str, site: SideSite, kind: str) -> 
         )
         return rho * _known(column, group.field_effect), rho * 0.07
     if kind != "benzoic_acid":
-        return rho * _known(group.sigma_para, group.field_effect), 0.35 * rho
+        return rho * _known(group.sigma_ortho_phenol, group.field_effect), 0.35 * rho
     amino = group.family == "amino" and group.charge == 0
     ether = group.family == "oxygen" and not group.hbond_donor and group.charge == 0
     fall = ORTHO_FIELD * group.field_effect + (ORTHO_BULK if group.bulk else 0.0)

@@ -29,7 +29,7 @@ from tuner.prediction.records import SitePrediction, Term
 from tuner.prediction.ring_model import RingModel
 from tuner.prediction.side_sites import side_pka, side_site
 from tuner.prediction.words import substitution
-from tuner.structure.charging import charged_groups
+from tuner.structure.charging import bonds_between, charged_groups
 from tuner.structure.molecule import matches
 from tuner.structure.records import Dissection, SiteView
 from tuner.structure.scaffolds import CoreIndex
@@ -37,6 +37,7 @@ from tuner.structure.scaffolds import CoreIndex
 REPORTING_KINDS = ("phenol", "aniline")
 AMINE_SERIES = ("anilinium", "n_alkyl_anilinium", "nn_dialkyl_anilinium")
 STATISTICAL_TWO = log10(2.0)
+SAME_CENTRE_BONDS = 2
 
 Charges = Mapping[int, int]
 """Atom number -> formal charge that it carries when its site is ionised."""
@@ -95,6 +96,7 @@ class SiteMaker:
                 self._add_side_site(made, view, medium)
         self._held_together(made, kept)
         self._bridged_by_azo(made, kept, found.smiles)
+        self._two_protons_on_one_centre(made, kept, found.smiles)
         return made
 
     def _charge(self, view: SiteView) -> int:
@@ -215,6 +217,20 @@ class SiteMaker:
                 sd = hypot(made.ions[k].sd, DIHYDROXYAZO_SD)
                 self._replace(made, k, made.ions[k].pka - DIHYDROXYAZO_SHIFT, sd, -DIHYDROXYAZO_SHIFT)
             made.energies[i, j] = made.energies[j, i] = 2 * DIHYDROXYAZO_SHIFT
+
+    def _two_protons_on_one_centre(self, made: SiteTable, kept: list[SiteView], smiles: str) -> None:
+        """Phosphonic and arsonic acids: the rise to the second proton stands in the table."""
+        for i, view in enumerate(kept):
+            site = None if view.kind in REPORTING_KINDS else side_site(view.kind, view, self._library)
+            if site is None or site.second_step != site.second_step:
+                continue
+            for j, other in enumerate(kept):
+                near = other.kind == view.kind and i != j
+                if (
+                    near
+                    and bonds_between(smiles, view.reporting_atom, other.reporting_atom) == SAME_CENTRE_BONDS
+                ):
+                    made.energies[i, j] = site.second_step
 
     def _pair(self, made: SiteTable, core: str, i: int, j: int) -> None:
         """Site i of two equal ones: its pKa beside a neutral partner, and the rise when the partner is
