@@ -4,13 +4,16 @@ from __future__ import annotations
 
 from math import isfinite
 from pathlib import Path
+from textwrap import fill
 
 from rich.table import Table
 
 from tuner.brief.records import Medium
-from tuner.cli.console import note, out, say, table
+from tuner.cli.console import WIDEST, note, out, say, table
 from tuner.cli.predict import predictor
 from tuner.errors import StructureError
+from tuner.library import Library, load_library
+from tuner.library.catalogue import split_citation
 from tuner.prediction.records import Prediction, Term
 from tuner.report.digits import MISSING, drift, pka_text, signed
 from tuner.report.wording import CAUTIONS, medium_in_words
@@ -28,9 +31,17 @@ def run(smiles: str, temperature_c: float, ionic_strength_m: float, overlay: Pat
     out().print(_sum_table(answer))
     for line in _results(answer, medium):
         say(line)
-    for source in dict.fromkeys(term.source for term in answer.terms if term.source):
-        say(f"  source  {source}")
+    for line in _sources(answer, load_library(overlay)):
+        say(line)
     note(answer.notes)
+
+
+def _sources(answer: Prediction, library: Library) -> list[str]:
+    """Where the constants of the sum come from, each once, in full."""
+    keys = dict.fromkeys(key for term in answer.terms for key, _ in split_citation(term.source))
+    texts = [library.sources[key].text if key in library.sources else key for key in keys]
+    head, rest = "  from  ", " " * 8
+    return [fill(text, WIDEST, initial_indent=head, subsequent_indent=rest) for text in texts]
 
 
 def _sum_table(answer: Prediction) -> Table:

@@ -71,7 +71,11 @@ def _check_columns(columns: Sequence[str], path: Path) -> None:
             raise TunerError("the columns are not separated by commas", place=path,
                              remedy="save the table as comma-separated values")  # fmt: skip
         close = [name for name in columns if name.casefold() == SMILES]
-        remedy = f'write "{SMILES}" in small letters, not "{close[0]}"' if close else f"there are {', '.join(columns[:8])}"
+        remedy = (
+            f'write "{SMILES}" in small letters, not "{close[0]}"'
+            if close
+            else f"there are {', '.join(columns[:8])}"
+        )
         raise TunerError('column "smiles" is missing', place=path, remedy=remedy)
     twice = sorted({name for name in columns if columns.count(name) > 1})
     if twice:

@@ -21,6 +21,7 @@ ADDED = ("core", "substitution", "reporting_atom", "pka", "pka_sd", "macroscopic
 NOTE_SEPARATOR = "; "
 ODD_ROW = "the row had too few or too many cells"
 EMPTY = "no structure in this row"
+DEFECT = "a defect of the program: please report this molecule"
 SHOWN = 20
 
 
@@ -81,7 +82,7 @@ def _row(
 ) -> tuple[tuple[str, ...], Prediction]:
     """The added cells of one row, and the prediction itself."""
     smiles = molecules.smiles(n)
-    answer = predict(smiles) if smiles else Prediction(smiles, notes=(EMPTY,))
+    answer = _safely(predict, smiles) if smiles else Prediction(smiles, notes=(EMPTY,))
     notes = (*((ODD_ROW,) if n in molecules.odd else ()), *answer.notes)
     cells = (
         answer.core,
@@ -93,6 +94,14 @@ def _row(
         NOTE_SEPARATOR.join(notes),
     )
     return cells, answer
+
+
+def _safely(predict: Callable[[str], Prediction], smiles: str) -> Prediction:
+    """A prediction; a defect of the program costs this row its number, never the rest of the table."""
+    try:
+        return predict(smiles)
+    except Exception as fault:
+        return Prediction(smiles, notes=(f"{DEFECT} ({type(fault).__name__})",))
 
 
 def _plain(value: float) -> str:

@@ -1,0 +1,158 @@
+"""Does `tuner predict` give a row for every molecule, and `tuner explain` a sum that adds up?"""
+
+from __future__ import annotations
+
+import csv
+import re
+from pathlib import Path
+
+import pytest
+
+import tuner.cli.predict as predict_command
+from tests.cli.conftest import Tuner
+from tuner.cli.predict import ADDED
+from tuner.prediction.records import Prediction
+
+MOLECULES = """\
+name,smiles,pka
+phenol,Oc1ccccc1,9.99
+4-nitrophenol,Oc1ccc([N+](=O)[O-])cc1,7.15
+nonsense,xyz,
+toluene,Cc1ccccc1,
+nothing,,
+aniline,Nc1ccccc1,4.60
+"""
+
+
+@pytest.fixture
+def table(tuner: Tuner) -> Path:
+    """A small table in the working folder."""
+    path = Path("molecules.csv")
+    path.write_text(MOLECULES, encoding="utf-8")
+    return path
+
+
+def read(path: str) -> list[dict[str, str]]:
+    """A CSV as rows."""
+    with Path(path).open(encoding="utf-8", newline="") as file:
+        return list(csv.DictReader(file))
+
+
+def test_order_and_input_columns_are_kept_and_the_promised_ones_added(tuner: Tuner, table: Path) -> None:
+    seen = tuner("predict", str(table), "--out", "out.csv")
+    assert seen.code == 0, seen.err
+    rows = read("out.csv")
+    assert list(rows[0]) == ["name", "smiles", "given_pka", *ADDED]
+    assert [row["name"] for row in rows] == [
+        "phenol",
+        "4-nitrophenol",
+        "nonsense",
+        "toluene",
+        "nothing",
+        "aniline",
+    ]
+    assert rows[0]["given_pka"] == "9.99"
+    assert "given_pka" in seen.err
+    assert "3 of 6 molecules" in seen.out
+
+
+def test_known_parents_come_out_as_measured(tuner: Tuner, table: Path) -> None:
+    tuner("predict", str(table), "--out", "out.csv")
+    rows = {row["name"]: row for row in read("out.csv")}
+    # 0.1: the spread of repeated determinations of one compound
+    assert float(rows["phenol"]["pka"]) == pytest.approx(9.99, abs=0.1)
+    assert float(rows["4-nitrophenol"]["pka"]) == pytest.approx(7.15, abs=0.1)
+    assert float(rows["aniline"]["pka"]) == pytest.approx(4.60, abs=0.1)
+    assert rows["phenol"]["reporting_atom"] == "0"
+    assert float(rows["phenol"]["pka_sd"]) > 0.0
+
+
+def test_what_cannot_be_treated_gets_a_note_and_no_number(tuner: Tuner, table: Path) -> None:
+    tuner("predict", str(table), "--out", "out.csv")
+    for row in read("out.csv"):
+        if row["name"] in ("nonsense", "toluene", "nothing"):
+            assert (row["pka"], row["pka_sd"], row["macroscopic_pkas"]) == ("", "", "")
+            assert row["note"]
+
+
+def test_macroscopic_constants_ascend(tuner: Tuner) -> None:
+    Path("m.csv").write_text("smiles\nOC(=O)c1ccc(O)cc1\nNc1ccc(O)cc1\n", encoding="utf-8")
+    tuner("predict", "m.csv", "--out", "out.csv")
+    for row in read("out.csv"):
+        values = [float(value) for value in row["macroscopic_pkas"].split(";")]
+        assert len(values) == 2
+        assert values == sorted(values)
+
+
+def test_the_medium_moves_the_number(tuner: Tuner, table: Path) -> None:
+    tuner("predict", str(table), "--out", "cold.csv")
+    tuner("predict", str(table), "--out", "warm.csv", "--temperature-c", "40", "--ionic-strength-m", "0.1")
+    assert float(read("warm.csv")[0]["pka"]) < float(read("cold.csv")[0]["pka"]) - 0.2
+
+
+def test_without_out_a_table_is_shown(tuner: Tuner, table: Path) -> None:
+    seen = tuner("predict", str(table))
+    assert "pKa' ± sd" in seen.out
+    assert sorted(path.name for path in Path().iterdir()) == ["molecules.csv"]
+
+
+@pytest.mark.parametrize(
+    ("arguments", "part"),
+    [
+        (("--temperature-c", "298"), "degC"),
+        (("--ionic-strength-m", "150"), "mol/L"),
+        (("--out", "molecules.csv"), "replace the input"),
+        (("--overlay", "none"), "library folder does not exist"),
+    ],
+)
+def test_a_slip_is_one_line_and_leaves_nothing(
+    tuner: Tuner, table: Path, arguments: tuple[str, ...], part: str
+) -> None:
+    seen = tuner(
+        "predict", str(table), *(("--out", "out.csv") if "--out" not in arguments else ()), *arguments
+    )
+    assert seen.code == 2
+    assert part in seen.fault
+    assert table.read_text(encoding="utf-8") == MOLECULES
+    assert [path.name for path in Path().iterdir()] == ["molecules.csv"]
+
+
+def test_a_defect_costs_one_row_and_not_the_table(
+    tuner: Tuner, table: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    def fails_on_aniline(smiles: str) -> Prediction:
+        if smiles.startswith("N"):
+            raise ZeroDivisionError
+        return Prediction(smiles, pka=9.0, pka_sd=0.1)
+
+    monkeypatch.setattr(predict_command, "predictor", lambda medium, overlay: fails_on_aniline)
+    assert tuner("predict", str(table), "--out", "out.csv").code == 0
+    notes = {row["name"]: row["note"] for row in read("out.csv")}
+    assert "ZeroDivisionError" in notes["aniline"]
+    assert notes["phenol"] == ""
+
+
+def test_a_missing_column_is_named(tuner: Tuner) -> None:
+    Path("m.csv").write_text("structure\nC\n", encoding="utf-8")
+    seen = tuner("predict", "m.csv", "--out", "out.csv")
+    assert seen.code == 2
+    assert 'm.csv: column "smiles" is missing' in seen.fault
+
+
+def test_an_explanation_adds_up(tuner: Tuner) -> None:
+    seen = tuner("explain", "Oc1c(Cl)cc(C#N)cc1OC")
+    assert seen.code == 0, seen.err
+    rows = seen.out.split("remark")[1].split("sum:")[0]
+    terms = [
+        float(v.replace("−", "-")) for v in re.findall(r"([+−]?\d+\.\d\d)\s+\d\.\d\d\s*(?:\n|[a-z])", rows)
+    ]
+    total = float(re.search(r"sum: .*?(\d+\.\d\d)", seen.out).group(1))  # type: ignore[union-attr]
+    # 0.005 per term: each is rounded to two decimals
+    assert sum(terms) == pytest.approx(total, abs=0.005 * (len(terms) + 1))
+    assert "conditional pKa'" in seen.out
+
+
+def test_what_cannot_be_explained_says_why(tuner: Tuner) -> None:
+    seen = tuner("explain", "Cc1ccccc1")
+    assert seen.code == 2
+    assert "no ionising phenol or aniline" in seen.fault
