@@ -1,13 +1,11 @@
 """Which predicted step does a printed constant belong to?
 
-The books number the steps of a molecule in both directions: acids from the first proton on, diamines from
-the strongest base on,
-amphoteric compounds either way. So the printed steps of one compound are laid in ascending order beside the
-predicted ones,
-order kept, predicted steps left over where more are predicted than printed; among all such assignments the
-one with the
-smallest sum of differences counts. A label that names a group, such as pK(OH), only fits steps of such
-groups.
+The books number the steps of a molecule in both directions: acids from the first proton on, diamines from the
+strongest base on, amphoteric compounds either way. So the printed steps of one compound are laid in ascending
+order beside the predicted ones, order kept, predicted steps left over where more are predicted than printed;
+among all such assignments the one with the smallest sum of differences counts. Names of groups in a label, as
+in pK(OH), are passed over: in a molecule with several sites a step often belongs to two groups at once, and
+books name it after either.
 """
 
 from __future__ import annotations
@@ -17,15 +15,6 @@ from dataclasses import dataclass
 from functools import cache
 from math import inf
 
-GROUP_WORDS: dict[str, tuple[str, ...]] = {
-    "OH": ("phenol", "hydroxyheteroarene"),
-    "COOH": ("benzoic_acid", "aliphatic_acid"),
-    "SO2NH": ("benzenesulfonamide", "sulfonamide"),
-    "NH2": ("aniline", "aliphatic_amine"),
-    "NH+": ("aniline", "aliphatic_amine"),
-}
-"""Words inside a label's brackets -> kinds of sites that they can mean."""
-
 
 @dataclass(frozen=True, slots=True)
 class Step:
@@ -34,20 +23,6 @@ class Step:
     pka: float
     sd: float
     kind: str
-
-
-def kinds_meant(label: str) -> tuple[str, ...]:
-    """Kinds of sites that a printed label can mean; empty where it names none.
-
-    >>> kinds_meant("pK2(OH)"), kinds_meant("pKAH1")
-    (('phenol', 'hydroxyheteroarene'), ())
-    """
-    inside = label[label.find("(") + 1 : label.rfind(")")] if "(" in label else ""
-    word = inside.strip("-").replace("-", "")
-    for name in sorted(GROUP_WORDS, key=len, reverse=True):
-        if word.endswith(name):
-            return GROUP_WORDS[name]
-    return ()
 
 
 def match_steps(printed: Sequence[tuple[str, float]], predicted: Sequence[Step]) -> list[int | None]:
@@ -71,14 +46,11 @@ def match_steps(printed: Sequence[tuple[str, float]], predicted: Sequence[Step])
         """(unmatched, cost, assignment) of printed p.. against predicted s.."""
         if p == len(order):
             return 0, 0.0, ()
-        label, value = printed[order[p]]
+        value = printed[order[p]][1]
         found: tuple[int, float, tuple[int | None, ...]] = (len(order) + 1, inf, ())
         left, cost, rest = best(p + 1, s)
         found = min(found, (left + 1, cost, (None, *rest)), key=lambda t: t[:2])
-        wanted = kinds_meant(label)
         for k in range(s, len(predicted)):
-            if wanted and predicted[k].kind not in wanted:
-                continue
             left, cost, rest = best(p + 1, k + 1)
             found = min(found, (left, cost + abs(predicted[k].pka - value), (k, *rest)), key=lambda t: t[:2])
         return found
