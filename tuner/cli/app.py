@@ -157,8 +157,15 @@ def show(
 
 
 @app.command()
-def accuracy() -> None:
+def accuracy(
+    reference: Annotated[
+        Path | None,
+        typer.Option(
+            "--reference", metavar="FOLDER", help="Tables of measured values; default: the shipped ones."
+        ),
+    ] = None,
+) -> None:
     """Compare predictions with measured values."""
     from tuner.cli.accuracy import run
 
-    run()
+    run(reference)

@@ -5,7 +5,7 @@ from __future__ import annotations
 from rich.table import Table
 
 from tuner.brief import Brief, find_brief, read_brief
-from tuner.cli.console import out, say, table
+from tuner.cli.console import say, show, table
 from tuner.report.digits import count
 from tuner.report.wording import anchor_in_words, medium_in_words, target_in_words
 from tuner.search.result import SpaceSummary
@@ -21,7 +21,7 @@ def run(name: str) -> None:
         spaces = survey(brief)
     for line in brief_lines(brief):
         say(line)
-    out().print(space_table(spaces))
+    show(space_table(spaces))
     total = sum(space.analogs for space in spaces)
     say(f"{count(total)} analogs; the brief is sound")
 

@@ -75,6 +75,17 @@ def table(
     return drawn
 
 
+def show(drawn: Table) -> None:
+    """A table on standard output; where that is no screen, without blanks at the ends of lines."""
+    console = out()
+    if sys.stdout.isatty():
+        console.print(drawn)
+        return
+    with console.capture() as held:
+        console.print(drawn)
+    print("\n".join(line.rstrip() for line in held.get().splitlines()))
+
+
 def say(text: str, *, quiet: bool = False) -> None:
     """One line of result on standard output, never wrapped."""
     if not quiet:

@@ -10,7 +10,7 @@ from time import perf_counter
 from rich.table import Table
 
 from tuner.brief import Brief, find_brief, read_brief
-from tuner.cli.console import note, out, progress, say, table
+from tuner.cli.console import note, progress, say, show, table
 from tuner.cli.faults import placed_in
 from tuner.report import digits, write_run
 from tuner.report.folder import check_free, free_folder
@@ -53,7 +53,7 @@ def _make(
 
 def _print(result: DesignResult, files: tuple[Path, ...]) -> None:
     """The short table, the doubts, and where the files are."""
-    out().print(candidate_table(result))
+    show(candidate_table(result))
     say(f"{result.method} search: {result.certificate}")
     say("")
     say(f"Written to {files[0].parent}{_separator(files[0])}")

@@ -9,7 +9,7 @@ from textwrap import fill
 from rich.table import Table
 
 from tuner.brief.records import Medium
-from tuner.cli.console import WIDEST, note, out, say, table
+from tuner.cli.console import WIDEST, note, say, show, table
 from tuner.cli.predict import predictor
 from tuner.errors import StructureError
 from tuner.library import Library, load_library
@@ -28,7 +28,7 @@ def run(smiles: str, temperature_c: float, ionic_strength_m: float, overlay: Pat
         raise StructureError(f"no pKa for {smiles}: {reason}")
     name = f"{answer.substitution} on {answer.core}" if answer.core else answer.substitution
     say(f"{answer.treated}: {name}, reporting atom {answer.reporting_atom}")
-    out().print(_sum_table(answer))
+    show(_sum_table(answer))
     for line in _results(answer, medium):
         say(line)
     for line in _sources(answer, load_library(overlay)):

@@ -8,7 +8,7 @@ from pathlib import Path
 from rich.table import Table
 
 from tuner.brief.records import Medium
-from tuner.cli.console import note, out, progress, say, table
+from tuner.cli.console import note, progress, say, show, table
 from tuner.cli.molecules import Molecules, read_molecules, renamed, with_columns
 from tuner.errors import TunerError
 from tuner.prediction.records import Prediction
@@ -50,7 +50,7 @@ def run(
     given = sum(1 for _, answer in answers if answer.found)
     if target is None:
         if not quiet:
-            out().print(_table(molecules, answers, medium))
+            show(_table(molecules, answers, medium))
     else:
         from tuner.report.folder import write_file
 

@@ -6,7 +6,7 @@ from collections.abc import Callable
 from pathlib import Path
 from textwrap import fill
 
-from tuner.cli.console import WIDEST, out, say, table
+from tuner.cli.console import WIDEST, say, show, table
 from tuner.errors import TunerError
 from tuner.library import Library, load_library
 from tuner.library.checks import nearest
@@ -92,7 +92,7 @@ def _substituents(library: Library) -> None:
     caption = (
         "published base constants, no unit; errors, sources and ortho values: tuner show substituents NAME"
     )
-    out().print(table(f"{len(rows)} groups", headings, rows, caption))
+    show(table(f"{len(rows)} groups", headings, rows, caption))
 
 
 def _plain(value: Value) -> str:
@@ -145,7 +145,7 @@ def _series(library: Library) -> None:
         )
         for s in library.series.values()
     ]
-    out().print(table("Reaction series", headings, rows, "pKa of 25 °C, water, zero ionic strength"))
+    show(table("Reaction series", headings, rows, "pKa of 25 °C, water, zero ionic strength"))
 
 
 def _enthalpy(series: Series) -> str:
@@ -183,7 +183,7 @@ def _cores(library: Library) -> None:
         for c in library.cores.values()
     ]
     caption = "parent: hydrogen at every open position; drawing and positions: tuner show cores NAME"
-    out().print(table(f"{len(rows)} cores", headings, rows, caption))
+    show(table(f"{len(rows)} cores", headings, rows, caption))
 
 
 def _one_core(core: Core, library: Library, svg: Path | None) -> None:
@@ -215,9 +215,7 @@ def _one_core(core: Core, library: Library, svg: Path | None) -> None:
         ("share that arrives", "right"),
     )
     slots = [prepared.slot(label) for label in prepared.open_labels]
-    out().print(
-        table("", headings, [(s.label, s.relation, s.column, f"{s.transmission:.2f}") for s in slots])
-    )
+    show(table("", headings, [(s.label, s.relation, s.column, f"{s.transmission:.2f}") for s in slots]))
     path = svg if svg is not None else Path(f"{file_name(core.name)}.svg")
     write_file(path, draw_core(core).encode("utf-8"))
     say(f"drawing with numbered positions: {path}")
@@ -254,7 +252,7 @@ def _stock(library: Library) -> None:
         ("roles", "left"),
         ("in stock", "left"),
     )
-    out().print(table(f"{len(rows)} bottles", headings, rows, "an invented shelf of real compounds"))
+    show(table(f"{len(rows)} bottles", headings, rows, "an invented shelf of real compounds"))
 
 
 def _one_item(library: Library, name: str) -> None:

@@ -1,0 +1,85 @@
+"""Command `tuner accuracy`: how far are predictions from measured values that the fit did not see?"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from pathlib import Path
+
+from rich.table import Table
+
+from tuner.cli.console import say, show, table
+from tuner.fitting.acidity_fit import Fit
+from tuner.fitting.crossval import BEST_SHARE, WITHIN, LeftOut, Score
+
+WORST_SHOWN = 10
+DOUBTED = 0.5
+"""A measured value with a smaller weight in the robust fit disagrees with all that resembles it."""
+UNCERTAIN = 0.3
+"""A stated error (pKa units) from which a miss was to be expected."""
+
+
+def run(reference: Path | None) -> None:
+    """Fit anew, leave out one compound at a time, print scores and the worst compounds."""
+    from tuner.fitting.__main__ import make_fit
+    from tuner.fitting.crossval import leave_out, scores
+
+    made, _ = make_fit(reference, tune=reference is not None)
+    found = leave_out(made)
+    whose = (
+        "the measured values that ship with the program"
+        if reference is None
+        else f"the tables in {reference}"
+    )
+    say(f"Model fitted on {whose}; each compound is left out of the fit that predicts it.")
+    say("pKa at 25 °C and zero ionic strength, in pKa units.")
+    show(_score_table(scores(found)))
+    for scaffold in dict.fromkeys(f.row.scaffold for f in found):
+        show(_worst_table(scaffold, [f for f in found if f.row.scaffold == scaffold], made))
+
+
+def _score_table(scores: Iterable[Score]) -> Table:
+    """One row per set of compounds."""
+    headings = (
+        ("set", "left"),
+        ("compounds", "right"),
+        (f"mean |error|, best {BEST_SHARE:.0%}", "right"),
+        ("median |error|", "right"),
+        (f"within {WITHIN:g}", "right"),
+        ("90 % interval holds", "right"),
+    )
+    rows = [
+        (s.title, str(s.n), f"{s.mean_best:.2f}", f"{s.median:.2f}", f"{s.within:.0%}", f"{s.coverage:.0%}")
+        for s in scores
+    ]
+    return table("Predicted against measured", headings, rows)
+
+
+def _worst_table(scaffold: str, found: list[LeftOut], made: Fit) -> Table:
+    """The compounds with the largest errors and what is known about why."""
+    weights = {id(row): weight for row, weight in zip(made.design.rows, made.weights, strict=True)}
+    headings = (
+        ("compound", "left"),
+        ("measured", "right"),
+        ("predicted ± sd", "right"),
+        ("why", "left"),
+    )
+    worst = sorted(found, key=lambda f: (-abs(f.error), f.row.name))[:WORST_SHOWN]
+    rows = [
+        (
+            f.row.name,
+            f"{f.row.pka25:.2f}",
+            f"{f.predicted:.2f} ± {f.sd:.2f}",
+            _why(f, float(weights[id(f.row)])),
+        )
+        for f in worst
+    ]
+    return table(f"Worst {scaffold}s", headings, rows)
+
+
+def _why(found: LeftOut, weight: float) -> str:
+    """What the fit itself says about a miss."""
+    if weight < DOUBTED:
+        return "the value disagrees with its neighbours; a misprint, or an effect of its own"
+    if found.sd >= UNCERTAIN:
+        return "foretold: its groups or their coupling are little known"
+    return "not foretold"
