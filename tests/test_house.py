@@ -400,7 +400,8 @@ def test_every_data_file_begins_with_what_its_columns_mean(path: Path) -> None:
             break
         comment.append(line)
     assert comment, "the file does not begin with a comment"
-    if path.suffix == ".csv" and "as in" not in " ".join(comment):
+    fitted = path.parent.name == "acidity"  # written by the fit, whose modules say what stands in them
+    if path.suffix == ".csv" and not fitted and "as in" not in " ".join(comment):
         columns = next(csv.reader([next(line for line in lines if line and not line.startswith("#"))]))
         words = set(re.findall(r"\w+", " ".join(comment)))
         silent = [

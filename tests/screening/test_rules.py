@@ -6,11 +6,11 @@ from pathlib import Path
 
 import pytest
 
-from tuner.errors import LibraryError, StructureError
+from tuner.errors import BriefError, LibraryError, StructureError
 from tuner.library import load_library
 from tuner.screening.records import SEVERITIES, WITHHOLD
 from tuner.screening.rules import ENERGETIC, load_rules
-from tuner.screening.screen import flag_names, screen
+from tuner.screening.screen import flag_names, require_known_flags, screen
 from tuner.structure.molecule import canonical_smiles, read_smarts
 
 LIBRARY = load_library()
@@ -107,6 +107,12 @@ def own_folder(tmp_path: Path, text: str) -> Path:
     own.mkdir()
     (own / "hazards.toml").write_text(text)
     return own
+
+
+def test_a_brief_may_name_only_flags_that_exist() -> None:
+    require_known_flags(["carcinogenic", "listed amine", "dinitrophenol"], LIBRARY)
+    with pytest.raises(BriefError, match='no flag "carcinogen"; did you mean "carcinogenic"'):
+        require_known_flags(["carcinogen"], LIBRARY)
 
 
 SOUND = '[rule."blue"]\nclass = "mine"\nseverity = "warn"\nwords = "not in our house"\nsmarts = ["[Br]"]\n'

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
-from tuner.errors import StructureError
+from tuner.errors import BriefError, StructureError
 from tuner.library.catalogue import Library
+from tuner.library.checks import nearest
 from tuner.screening.amines import amine_flag, released_amines
 from tuner.screening.energetic import nitro_count, too_rich_in_oxygen
 from tuner.screening.match import applying
@@ -47,6 +48,16 @@ def is_energetic(smiles: str, library: Library) -> bool:
 def flag_names(library: Library) -> tuple[str, ...]:
     """Every word that a brief may use for a flag (rule names and classes), sorted."""
     return load_rules(library).names()
+
+
+def require_known_flags(names: Iterable[str], library: Library) -> None:
+    """BriefError where a brief names a flag that no rule raises, with the nearest one; a misspelt flag would
+    otherwise let pass what it was meant to exclude."""
+    known = flag_names(library)
+    for name in names:
+        if name not in known:
+            remedy = f"{nearest(name, known)} (rules and classes of hazards.toml)"
+            raise BriefError(f'there is no flag "{name}"', place="key limits.flags", remedy=remedy)
 
 
 def _screen_one(smiles: str, rules: HazardRules) -> Flags:
