@@ -101,6 +101,13 @@ class SpaceBounds:
             self._spans[key] = SumSpan(table, depth, self._budget)
         return self._spans[key]
 
+    def pka_span(self, index: IntArray) -> tuple[Int64, Int64]:
+        """Lowest and highest pKa' (whole numbers) of the completions of prefixes, shape (n, depth) -> two
+        of (n,).
+        """
+        left = None if self._budget is None else self._budget.left(index)
+        return self._span("pka", self.tables.pka, index.shape[1]).range(index, left)
+
     def at(self, index: IntArray) -> Bounds:
         """Bounds of the prefixes in `index`, shape (n, depth); non-canonical prefixes are not possible."""
         depth = index.shape[1]

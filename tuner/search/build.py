@@ -5,6 +5,8 @@ analog.
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Mapping, Sequence
+from dataclasses import replace
+from itertools import product
 
 import numpy as np
 
@@ -60,14 +62,14 @@ def build_space(brief: Brief, library: Library, makeable: Makeable | None = None
         core = library.cores[name]
         prepared = prepare_core(core)
         supplied = makeable(core, prepared, (*groups, *handles)) if makeable is not None else None
-        spaces.append(_core_space(brief, library, core, prepared, groups, handles, supplied))
-    if all(0 in space.shape for space in spaces):
+        spaces += _core_spaces(brief, library, core, prepared, groups, handles, supplied)
+    if not spaces or all(0 in space.shape for space in spaces):
         remedy = "allow more groups, or more reagents"
         raise BriefError("no group can stand on any core of the brief", place="key groups", remedy=remedy)
     return DesignSpace(tuple(spaces))
 
 
-def _core_space(
+def _core_spaces(
     brief: Brief,
     library: Library,
     core: Core,
@@ -75,8 +77,8 @@ def _core_space(
     groups: Sequence[Substituent],
     handles: Sequence[Substituent],
     supplied: Mapping[str, frozenset[str]] | None,
-) -> CoreSpace:
-    """The space of one core."""
+) -> list[CoreSpace]:
+    """The spaces of one core: one, or several where its nitrogen may bear no, one or two groups."""
     target = brief.target.ph
     choices = []
     for label in prepared.open_labels:
@@ -90,7 +92,39 @@ def _core_space(
             )
         )
     shared = _shared_by_symmetry(choices, prepared.symmetry)
-    return CoreSpace(core, prepared, shared, _limits(brief, library, core, prepared, shared))
+    return [
+        CoreSpace(core, part, listed, _limits(brief, library, core, part, listed))
+        for part, listed in nitrogen_parts(prepared, shared)
+    ]
+
+
+def nitrogen_parts(
+    prepared: PreparedCore, choices: tuple[tuple[Choice, ...], ...]
+) -> list[tuple[PreparedCore, tuple[tuple[Choice, ...], ...]]]:
+    """Split a space so that in each part every position on the reporting nitrogen bears always hydrogen or
+    always a group.
+
+    The groups on the ring act differently on primary, secondary and tertiary amines, so a look-up table
+    holds for one of them. Of parts that symmetry makes equal one is kept; each part keeps the symmetry
+    operations that leave it as it is.
+    """
+    on = [p for p, label in enumerate(prepared.open_labels) if prepared.slot(label).relation == "nitrogen"]
+    parts: list[tuple[PreparedCore, tuple[tuple[Choice, ...], ...]]] = []
+    seen: set[tuple[bool, ...]] = set()
+    for bears in product((False, True), repeat=len(on)):
+        occupied = dict(zip(on, bears, strict=True))
+        pattern = tuple(occupied.get(p, False) for p in range(len(choices)))
+        images = {tuple(pattern[q] for q in permutation) for permutation in prepared.symmetry} | {pattern}
+        listed = tuple(
+            tuple(c for c in own if (c.free.short != HYDROGEN_SHORT) == occupied[p]) if p in occupied else own
+            for p, own in enumerate(choices)
+        )
+        if images & seen or (on and not all(listed[p] for p in on)):
+            continue
+        seen.add(pattern)
+        kept = tuple(g for g in prepared.symmetry if tuple(pattern[q] for q in g) == pattern)
+        parts.append((replace(prepared, symmetry=kept), listed))
+    return parts
 
 
 def _fits(

@@ -28,7 +28,7 @@ class Certificate:
         workers.
         """
         exact = self.resolution_pka < 1e-6
-        front = "exact" if exact else f"exact for offsets in steps of {self.resolution_pka:g} pKa units"
+        front = "exact" if exact else f"exact for offsets in steps of {self.resolution_pka:.2g} pKa units"
         rest = "" if self.bound == float("-inf") else f" No unlisted analog scores above {self.bound:.3f}."
         return (
             f"All {self.covered:,} patterns are covered: each was evaluated, or an admissible bound shows "

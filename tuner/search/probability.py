@@ -14,8 +14,8 @@ import numpy as np
 
 from tuner.acidity.tables import FloatArray
 
-LEAST_SD = 1e-6
-"""pKa units; a smaller standard error is treated as this one, so that nothing is divided by zero."""
+LEAST_SD = 0.02
+"""pKa units; no calculated pKa is surer than this, whatever the algebra says (as in `acidity.pattern`)."""
 
 
 @dataclass(frozen=True)
