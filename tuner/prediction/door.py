@@ -156,7 +156,7 @@ class MoleculeDoor:
         notes += [shared] if shared else []
         charged = ionisation.charged_near(0, states, pka)
         around = table.evaluate[0](charged)
-        sd = hypot(around.sd, table.ions[0].effect.sd)
+        sd = hypot(around.sd, table.ions[0].effect.sd, ionisation.coupling_sd(0))
         near = [s for k, s in enumerate(table.ions) if k and abs(s.pka - pka) < CLOSE_PKA and s.own is None]
         if near:
             kinds = sorted({s.kind.replace("_", " ") for s in near})

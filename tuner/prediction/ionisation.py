@@ -37,6 +37,8 @@ FARTHEST_BONDS = 9
 CARBOXYLS_ON_A_RING = {5: 1.8, 6: 0.45, 7: 0.45}
 """pKa units by the number of bonds: phthalic, isophthalic and terephthalic acid, as remembered."""
 
+COUPLING_SD_LEAST, COUPLING_SD_SHARE, COUPLING_SD_MOST = 0.10, 0.35, 0.50
+
 EXACT_SITES = 6
 """Up to this many sites a phenol or aniline is evaluated for every set of charges; beyond, energies add in
 pairs.
@@ -193,6 +195,18 @@ class Ionisation:
                 total += self.sites[f].charge_if_ionised
         return total
 
+    def coupling_sd(self, k: int) -> float:
+        """Standard error of site k's constants by what the other free sites do to it (pKa units).
+
+        Constants of charged neighbours, hydrogen bonds and tautomers are known less well than those of
+        neutral groups;
+        sized on molecules with two and more sites so that stated intervals hold.
+        """
+        felt = sum(abs(self.energy(k, j)) for j in self.free if j != k)
+        if not felt:
+            return 0.0
+        return min(COUPLING_SD_MOST, COUPLING_SD_LEAST + COUPLING_SD_SHARE * felt)
+
     def macroscopic(self, states: Microstates) -> tuple[tuple[float, float, str], ...]:
         """(pKa, standard error, kind of site) of every step, ascending; always-ionised acids are listed with
         their own constants.
@@ -200,8 +214,10 @@ class Ionisation:
         pkas = states.macroscopic_pkas()
         found = []
         for step, pka in enumerate(pkas):
-            site = self.sites[self.free[states.stepwise_site(step)]]
-            found.append((float(pka), hypot(site.sd, site.effect.sd), site.kind))
+            number = self.free[states.stepwise_site(step)]
+            site = self.sites[number]
+            sd = hypot(site.sd, site.effect.sd, self.coupling_sd(number))
+            found.append((float(pka), sd, site.kind))
         n = len(self.fixed)
         for j, k in enumerate(self.fixed):
             statistical = log10((n - j) / (j + 1)) if n > 1 else 0.0
