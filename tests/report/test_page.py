@@ -148,16 +148,16 @@ def test_marks_of_the_picture_lie_inside_it() -> None:
 def test_the_front_is_drawn_last_so_that_nothing_hides_it() -> None:
     classes = re.findall(r'class="mark (\w+)"', trade_picture(sample_result()))
     assert classes == sorted(classes, key=("cloud", "listed", "front").index)
-    assert classes.count("front") == 2
+    assert (classes.count("listed"), classes.count("front")) == (2, 2)
 
 
 def test_the_caption_counts_what_is_outside() -> None:
     far = replace(sample_result().cloud[0], offset=9.0)
-    assert "1 marks lie outside" in trade_caption(replace(sample_result(), cloud=(far,)))
+    assert "1 marks lie outside" in trade_caption(replace(sample_result(), cloud=(far,), candidates=()))
 
 
 def test_a_picture_of_nothing_is_empty() -> None:
-    assert trade_picture(replace(sample_result(), front=(), cloud=())) == ""
+    assert trade_picture(replace(sample_result(), front=(), cloud=(), candidates=())) == ""
     assert response_picture(sample_result(), {"x": Exhibit()}) == ""
 
 

@@ -6,7 +6,7 @@ from rich.table import Table
 
 from tuner.brief import Brief, find_brief, read_brief
 from tuner.cli.console import say, show, table
-from tuner.report.digits import count
+from tuner.report.digits import choices_in_words, count
 from tuner.report.wording import anchor_in_words, medium_in_words, target_in_words
 from tuner.search.result import SpaceSummary
 
@@ -47,10 +47,8 @@ def space_table(spaces: tuple[SpaceSummary, ...]) -> Table:
         ("core", "left"),
         ("choices by position", "left"),
         ("patterns", "right"),
-        ("analogs (each molecule once)", "right"),
+        ("analogs", "right"),
     )
-    rows = [
-        (s.core, ", ".join(f"{label}: {n}" for label, n in s.positions), count(s.patterns), count(s.analogs))
-        for s in spaces
-    ]
-    return table("Design space", headings, rows)
+    rows = [(s.core, choices_in_words(s.positions), count(s.patterns), count(s.analogs)) for s in spaces]
+    caption = "patterns: choices multiplied; analogs: each molecule once, within the limits on groups"
+    return table("Design space", headings, rows, caption)

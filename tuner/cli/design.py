@@ -5,12 +5,13 @@ from __future__ import annotations
 from dataclasses import replace
 from math import isfinite
 from pathlib import Path
+from textwrap import fill
 from time import perf_counter
 
 from rich.table import Table
 
 from tuner.brief import Brief, find_brief, read_brief
-from tuner.cli.console import note, progress, say, show, table
+from tuner.cli.console import WIDEST, note, progress, say, show, table
 from tuner.cli.faults import placed_in
 from tuner.report import digits, write_run
 from tuner.report.folder import check_free, free_folder
@@ -53,14 +54,19 @@ def _make(
 
 def _print(result: DesignResult, files: tuple[Path, ...]) -> None:
     """The short table, the doubts, and where the files are."""
+    target = result.brief.target
+    say(result.brief.title)
+    say(f"{target_in_words(target)} in {medium_in_words(target.medium)}")
+    say("")
     show(candidate_table(result))
-    say(f"{result.method} search: {result.certificate}")
+    say("")
+    say(fill(f"{result.method.capitalize()} search. {result.certificate}", WIDEST))
     say("")
     say(f"Written to {files[0].parent}{_separator(files[0])}")
     say("  " + ", ".join(path.name for path in files))
     say(f"  open {_page(files)} to look at structures and routes")
     say("")
-    say(" ".join(CAUTIONS[:2]))
+    say(fill(" ".join(CAUTIONS[:2]), WIDEST))
     note(result.notes)
 
 
@@ -89,12 +95,10 @@ def candidate_table(result: DesignResult) -> Table:
         ("cautions", "right"),
     ]
     shown = result.candidates[:ROWS_SHOWN]
-    target = result.brief.target
-    title = f"{result.brief.title}: {target_in_words(target)}, {medium_in_words(target.medium)}"
     more = len(result.candidates) - len(shown)
-    caption = "front: nothing is closer, shorter and lighter at once; cautions: see the table or page"
+    caption = "front: nothing is closer, shorter and lighter at once; cautions: how many"
     caption = f"{more} more rows in the files; {caption}" if more else caption
-    return table(title, headings, [_row(c, several) for c in shown], caption)
+    return table("", headings, [_row(c, several) for c in shown], caption)
 
 
 def _row(candidate: Candidate, several: bool) -> tuple[str, ...]:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from tuner.library import load_library
 from tuner.report import Exhibit, ph_grid
+from tuner.report.columns import shown_pka
 from tuner.report.page import CARDS
 from tuner.search.result import Candidate, DesignResult, Progress
 
@@ -36,7 +37,7 @@ def _response(candidate: Candidate, target_ph: float) -> tuple[float, ...]:
     from tuner.acidity.response import alpha
 
     grid = np.array(ph_grid(target_ph))
-    return tuple(float(share) for share in alpha(grid, np.array(candidate.pka)))
+    return tuple(float(share) for share in alpha(grid, np.array(shown_pka(candidate))))
 
 
 def _on_the_way(result: DesignResult) -> list[str]:

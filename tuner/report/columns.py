@@ -34,6 +34,11 @@ class Column:
     width: int = 12  # characters, in the workbook
 
 
+def shown_pka(candidate: Candidate) -> float:
+    """The pKa' that pictures show: the measured one where there is one, else the predicted."""
+    return candidate.measured_pka if isfinite(candidate.measured_pka) else candidate.pka
+
+
 def rounded(value: float, decimals: int) -> float | None:
     """The number with so many decimals, without a negative zero; None where there is none."""
     if not isfinite(value):

@@ -94,3 +94,18 @@ def drift(per_kelvin: float) -> str:
     '−0.12'
     """
     return signed(10.0 * per_kelvin, 2)
+
+
+def choices_in_words(positions: tuple[tuple[str, int], ...]) -> str:
+    """Number of choices at each position, equal neighbours told together.
+
+    >>> choices_in_words((("2", 27), ("3", 27), ("4'", 5)))
+    "27 at 2, 3; 5 at 4'"
+    """
+    told: list[tuple[int, list[str]]] = []
+    for label, number in positions:
+        if told and told[-1][0] == number:
+            told[-1][1].append(label)
+        else:
+            told.append((number, [label]))
+    return "; ".join(f"{number} at {', '.join(labels)}" for number, labels in told)

@@ -62,7 +62,7 @@ def _axes(x: Scale, foot: float) -> str:
         parts.append(text(f"{100 * share:.0f} %", LEFT - 10, y + 4, "tick", "end"))
     for value in ticks(x.low, x.high):
         parts.append(element("line", x1=x(value), x2=x(value), y1=foot, y2=foot + 5, class_="rule"))
-        parts.append(text(f"{value:g}", x(value), foot + 20, "tick", "middle"))
+        parts.append(text(f"{value:g}".replace("-", "−"), x(value), foot + 20, "tick", "middle"))
     parts.append(element("line", x1=x.start, x2=x.end, y1=foot, y2=foot, class_="rule"))
     parts.append(text("pH", (x.start + x.end) / 2, foot + 42, "axis", "middle"))
     middle = TOP + PLOT_HEIGHT / 2

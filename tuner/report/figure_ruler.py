@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from math import ceil, floor
 
+from tuner.report.columns import shown_pka
 from tuner.report.digits import pka_text
 from tuner.report.svg import Scale, element, hover, picture, text
 from tuner.search.result import DesignResult
@@ -39,16 +40,17 @@ def ruler_picture(result: DesignResult) -> str:
         place = x(tenth / 10)
         parts.append(element("line", x1=place, x2=place, y1=LINE, y2=LINE + depth, class_="rule thin"))
         if whole:
-            parts.append(text(f"{tenth // 10}", place, LINE + 24, "tick", "middle"))
+            parts.append(text(f"{tenth // 10}".replace("-", "−"), place, LINE + 24, "tick", "middle"))
     for candidate in reversed(shown):
-        if x.holds(candidate.pka):
+        pka = shown_pka(candidate)
+        if x.holds(pka):
             words = f"rank {candidate.rank}: pKa′ {pka_text(candidate.pka, candidate.pka_sd)}"
             parts.append(
                 element(
                     "line",
                     hover(words),
-                    x1=x(candidate.pka),
-                    x2=x(candidate.pka),
+                    x1=x(pka),
+                    x2=x(pka),
                     y1=18.0,
                     y2=LINE,
                     class_="pin first" if candidate.rank == 1 else "pin",

@@ -7,6 +7,7 @@ not hide one another.
 
 from __future__ import annotations
 
+from tuner.report.columns import shown_pka
 from tuner.report.digits import mass, signed
 from tuner.report.svg import Scale, element, hover, picture, text, ticks
 from tuner.search.result import DesignResult, TradePoint
@@ -15,7 +16,7 @@ WIDTH, LEFT, RIGHT, TOP, BOTTOM = 960.0, 92.0, 96.0, 34.0, 58.0
 BAND, BAND_MARGIN = 84.0, 11.0
 SMALLEST, LARGEST = 2.6, 7.0  # radius of a mark, pixels
 LABELLED_RANKS = 12
-MIN_HALF_WIDTH, WINDOWS_SHOWN = 0.8, 4.0  # pKa units; in tolerances
+MIN_HALF_WIDTH, WINDOWS_SHOWN = 0.8, 3.0  # pKa units; in tolerances
 LABEL_GAP_X, LABEL_GAP_Y = 20.0, 11.0
 
 
@@ -50,7 +51,7 @@ class _Frame:
 
 def trade_picture(result: DesignResult) -> str:
     """The picture as an SVG element; empty where there is nothing to show."""
-    points = (*result.cloud, *sorted(result.front, key=lambda p: (-p.rank, p.offset)))
+    points = _points(result)
     if not points:
         return ""
     frame = _Frame(result, points)
@@ -61,6 +62,24 @@ def trade_picture(result: DesignResult) -> str:
     parts.append(_rank_labels(frame))
     label = "Trade-off between distance from the target pH, number of steps and molar mass"
     return picture("".join(parts), WIDTH, frame.height, label, "figure trade")
+
+
+def _points(result: DesignResult) -> tuple[TradePoint, ...]:
+    """Backdrop, then listed candidates that are not on the front, then the front."""
+    listed = (
+        TradePoint(
+            c.core,
+            c.substitution,
+            shown_pka(c) - result.brief.target.ph,
+            c.steps,
+            c.molar_mass_g_mol,
+            False,
+            c.rank,
+        )
+        for c in result.candidates
+        if not c.front
+    )
+    return (*result.cloud, *listed, *result.front)
 
 
 def _bands(frame: _Frame) -> str:
@@ -132,7 +151,7 @@ def _rank_labels(frame: _Frame) -> str:
 
 def trade_caption(result: DesignResult) -> str:
     """What the picture shows, in words."""
-    points = (*result.front, *result.cloud)
+    points = _points(result)
     hidden = len(points) - len(_Frame(result, points).shown) if points else 0
     words = (
         f"Filled: the {len(result.front)} analogs on the front, which nothing beats in all three at once. "

@@ -179,7 +179,7 @@ def _spaces(result: DesignResult) -> list[dict[str, str]]:
         {
             "title": space.title,
             "colours": " → ".join(space.colours) if any(space.colours) else digits.MISSING,
-            "positions": ", ".join(f"{label}: {n}" for label, n in space.positions),
+            "positions": digits.choices_in_words(space.positions),
             "patterns": digits.count(space.patterns),
             "analogs": digits.count(space.analogs),
             "makeable": digits.count(space.makeable) if space.makeable >= 0 else digits.MISSING,
