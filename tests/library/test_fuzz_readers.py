@@ -58,7 +58,8 @@ def test_what_a_csv_writer_writes_is_read_back(tmp_path: Path, rows: list[tuple[
     csv.writer(text).writerows([("first", "second"), *rows])
     path = tmp_path / "written.csv"
     path.write_text(text.getvalue(), encoding="utf-8", newline="")
-    kept = [row for row in rows if not row[0].startswith("#") and "".join(row).strip(" ,\t")]
+    lines = text.getvalue().split("\r\n")[1:-1]
+    kept = [row for row, line in zip(rows, lines, strict=True) if line.strip(" ,\t") and line[0] != "#"]
     if not kept:
         with pytest.raises(LibraryError, match="no row"):
             read_csv(path, ("first", "second"))

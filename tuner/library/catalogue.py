@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import TypeVar
 
@@ -27,6 +27,7 @@ class Library:
     measured : tuple of MeasuredPka (pKa units, temperature in degC)
     overlay : the user's own folder, or None
     version : twelve hexadecimal digits that stand for the state of all data files
+    places : (kind of table, key) -> file and row or key where the record was read, for errors
     """
 
     substituents: Mapping[str, Substituent]
@@ -36,6 +37,7 @@ class Library:
     measured: tuple[MeasuredPka, ...]
     overlay: Path | None
     version: str
+    places: Mapping[tuple[str, str], str] = field(default_factory=dict, repr=False, compare=False)
     _by_word: Mapping[str, str] = field(default_factory=dict, repr=False, compare=False)
 
     def find_substituent(self, text: str) -> Substituent:
@@ -64,6 +66,10 @@ class Library:
     def find_series(self, text: str) -> Series:
         """The reaction series with this name or title (case aside); LibraryError with the nearest name."""
         return _find(text, self.series, "series")
+
+    def with_substituents(self, groups: Mapping[str, Substituent]) -> Library:
+        """A copy with other groups (short name -> Substituent), and the index of words made anew."""
+        return replace(self, substituents=groups, _by_word=index_words(groups.values()))
 
     def families(self) -> tuple[str, ...]:
         """Families of groups, sorted."""

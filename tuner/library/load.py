@@ -71,6 +71,7 @@ def _read_once(shipped: Path, overlay: Path | None, stamps: tuple[Stamp, Stamp])
         measured=tuple(joined.measured.values()),
         overlay=overlay,
         version=data_version(shipped, overlay),
+        places=joined.places,
         _by_word=index_words(joined.substituents.values()),
     )
 

@@ -252,6 +252,16 @@ class Table:
         """Every key of this table, each of which must hold a table, in the order of the file."""
         return {key: self.table(key) for key in self.values}
 
+    def listed(self, key: str) -> tuple[Table, ...]:
+        """A list of tables (`[[key]]` or `key = [{...}, {...}]`); empty where it is absent."""
+        value = self._value(key, (), (list, tuple), "a list of tables such as [{...}, {...}]")
+        whole = ".".join(part for part in (self.key, key) if part)
+        for n, entry in enumerate(value, start=1):
+            if not isinstance(entry, dict):
+                what = f"{_shown(entry)} in the list is no table"
+                fail(what, f"{self.place(key)}, entry {n}", "write {...}", self.error)
+        return tuple(Table(self.path, f"{whole} entry {n}", entry, self.error) for n, entry in enumerate(value, 1))
+
     def one_of(self, key: str, options: Sequence[str], default: str | None = None) -> str:
         """A string that must be one of `options` (or the default)."""
         value = self.text(key, default)
