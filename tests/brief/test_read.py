@@ -156,3 +156,11 @@ def test_an_unknown_name_points_to_the_nearest_demo() -> None:
 def test_a_folder_is_no_brief(tmp_path: Path) -> None:
     with pytest.raises(BriefError, match="this is a folder"):
         find_brief(str(tmp_path))
+
+
+def test_a_folder_of_the_same_name_does_not_hide_a_demo(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.chdir(tmp_path)
+    Path("acid-leach").mkdir()
+    assert find_brief("acid-leach").name == "acid-leach.toml"

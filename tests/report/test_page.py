@@ -13,7 +13,7 @@ from tests.report.sample import HOSTILE, sample_exhibits, sample_result
 from tuner.report.figure_response import response_picture
 from tuner.report.figure_ruler import ruler_picture
 from tuner.report.figure_trade import trade_caption, trade_picture
-from tuner.report.page import page
+from tuner.report.page import caution_letters, page
 from tuner.report.records import Exhibit, ph_grid
 from tuner.report.svg import Scale, themed, ticks
 from tuner.report.wording import CAUTIONS, HOW_SURE
@@ -184,3 +184,10 @@ def test_ticks_are_round_and_inside() -> None:
 def test_the_grid_of_ph_is_symmetric_about_the_target() -> None:
     grid = ph_grid(6.4)
     assert (grid[0], grid[len(grid) // 2], grid[-1]) == (2.9, 6.4, 9.9)
+
+
+def test_cautions_of_the_table_are_lettered_and_told_once(parsed: Balance) -> None:
+    letters = caution_letters(sample_result())
+    assert letters == {"azo dye": "a", HOSTILE: "b"}
+    words = " ".join(" ".join(parsed.words).split())
+    assert "a azo dye" in words

@@ -28,9 +28,9 @@ def find_brief(name: str) -> Path:
     path = Path(name)
     if path.is_file():
         return path
-    if path.is_dir():
-        raise BriefError("this is a folder", place=path, remedy="name the TOML file in it")
     if name in demo_briefs():
         return data_folder() / DEMO_FOLDER / f"{name}{ENDING}"
+    if path.is_dir():
+        raise BriefError("this is a folder", place=path, remedy="name the TOML file in it")
     remedy = f"name a TOML file or a demo brief; {nearest(name, demo_briefs())}"
     raise BriefError(f'there is no brief "{name}"', remedy=remedy)

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 from math import isfinite
+from string import ascii_lowercase
 from typing import Any
 
 from tuner import __version__
@@ -53,6 +54,7 @@ class Shown:
     stability: str
     measured: str
     cautions: tuple[str, ...]
+    letters: str
     notes: tuple[str, ...]
     others: tuple[tuple[str, str], ...]
     starting: tuple[str, ...]
@@ -81,7 +83,8 @@ def page(result: DesignResult, exhibits: Mapping[str, Exhibit]) -> bytes:
         lstrip_blocks=True,
         keep_trailing_newline=True,
     )
-    shown = [_shown(c, exhibits, Markup) for c in result.candidates]
+    letters = caution_letters(result)
+    shown = [_shown(c, exhibits, letters, Markup) for c in result.candidates]
     html = environment.get_template(TEMPLATE).render(
         result=result,
         brief=result.brief,
@@ -104,6 +107,7 @@ def page(result: DesignResult, exhibits: Mapping[str, Exhibit]) -> bytes:
         spaces=_spaces(result),
         counts=[(what, digits.count(n)) for what, n in result.counts],
         shared=_shared(result, exhibits, Markup),
+        lettered=[(letter, caution) for caution, letter in letters.items()],
         cautions=CAUTIONS,
         how_sure=HOW_SURE,
     )
@@ -116,7 +120,16 @@ def _drawing(smiles: str, exhibits: Mapping[str, Exhibit], markup: Any) -> Any:
     return markup(themed(exhibit.svg)) if exhibit and exhibit.svg else ""
 
 
-def _shown(candidate: Candidate, exhibits: Mapping[str, Exhibit], markup: Any) -> Shown:
+def caution_letters(result: DesignResult) -> dict[str, str]:
+    """Each caution of the run -> its letter (a, b ... z, then aa, ab ...), in order of first appearance."""
+    seen = dict.fromkeys(caution for c in result.candidates for caution in c.cautions)
+    signs = [*ascii_lowercase, *(a + b for a in ascii_lowercase for b in ascii_lowercase)]
+    return dict(zip(seen, signs, strict=False))
+
+
+def _shown(
+    candidate: Candidate, exhibits: Mapping[str, Exhibit], letters: Mapping[str, str], markup: Any
+) -> Shown:
     """A candidate in the words and digits of the page."""
     c = candidate
     steps = told_steps(c.route)
@@ -140,6 +153,7 @@ def _shown(candidate: Candidate, exhibits: Mapping[str, Exhibit], markup: Any) -
         stability=digits.percent(c.stability) if isfinite(c.stability) else "",
         measured=f"{c.measured_pka:.2f} ({c.measured_source})" if isfinite(c.measured_pka) else "",
         cautions=c.cautions,
+        letters=" ".join(letters.get(caution, "") for caution in c.cautions),
         notes=c.notes,
         others=tuple(
             (t.target.name or target_in_words(t.target), digits.percent(t.probability))
