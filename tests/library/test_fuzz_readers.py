@@ -17,7 +17,12 @@ from tuner.library.load import read_own_measured
 from tuner.library.stock import read_shelf
 from tuner.library.tables import read_csv, read_toml
 
-QUIET = settings(max_examples=120, deadline=None, suppress_health_check=[HealthCheck.function_scoped_fixture])
+QUIET = settings(
+    max_examples=120,
+    derandomize=True,
+    deadline=None,
+    suppress_health_check=[HealthCheck.function_scoped_fixture],
+)
 
 
 @pytest.mark.parametrize("seed", range(4))

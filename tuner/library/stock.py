@@ -57,8 +57,6 @@ def as_written(smiles: str, *, place: str = "") -> str:
 
 def read_roles(path: Path | None = None) -> dict[str, str]:
     """Role -> what it means, from the table `[roles]` of a reaction file (default: the shipped one)."""
-    if path is None and not (data_folder() / REACTIONS_FILE).is_file():
-        return {}
     table = read_toml(path or data_folder() / REACTIONS_FILE).table("roles")
     return {role: table.text(role) for role in table.values}
 
@@ -120,7 +118,7 @@ def _item(row: Row, known_roles: tuple[str, ...], canonical: Canonical) -> Stock
     """One row as a bottle."""
     roles = row.listing("roles")
     for role in roles:
-        if known_roles and role not in known_roles:
+        if role not in known_roles:
             remedy = nearest(role, known_roles)
             raise LibraryError(f'there is no role "{role}"', place=row.place("roles"), remedy=remedy)
     return StockItem(

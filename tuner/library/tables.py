@@ -260,7 +260,8 @@ class Table:
             if not isinstance(entry, dict):
                 what = f"{_shown(entry)} in the list is no table"
                 fail(what, f"{self.place(key)}, entry {n}", "write {...}", self.error)
-        return tuple(Table(self.path, f"{whole} entry {n}", entry, self.error) for n, entry in enumerate(value, 1))
+        numbered = enumerate(value, start=1)
+        return tuple(Table(self.path, f"{whole} entry {n}", entry, self.error) for n, entry in numbered)
 
     def one_of(self, key: str, options: Sequence[str], default: str | None = None) -> str:
         """A string that must be one of `options` (or the default)."""
