@@ -8,7 +8,12 @@ import pytest
 
 from tuner.brief.records import Reagents
 from tuner.errors import LibraryError, TunerError
+from tuner.library import load_library
+from tuner.library.folders import data_folder
 from tuner.library.stock import apply_reagents, read_roles, read_shelf, shelf_names, shipped_stock
+from tuner.library.tables import read_toml
+from tuner.screening.rules import load_rules
+from tuner.screening.screen import screen
 from tuner.structure.molecule import canonical_smiles
 
 ROLES = ("brominating", "base", "phenol")
@@ -144,3 +149,26 @@ def test_the_shipped_smiles_are_written_canonically() -> None:
 def test_shipped_stock_holds_each_compound_once() -> None:
     smiles = [item.smiles for item in shipped_stock(canonical_smiles)]
     assert len(smiles) == len(set(smiles))
+
+
+def test_every_bottle_that_a_reaction_names_is_on_the_example_shelf() -> None:
+    table = read_toml(data_folder() / "reactions.toml").table("reaction")
+    named = {
+        (rule, canonical_smiles(bottle))
+        for rule, reaction in table.tables().items()
+        for bottle in reaction.table("gives").values.values()
+        if bottle
+    }
+    shelf = {item.smiles for item in read_shelf("example")}
+    assert sorted((rule, bottle) for rule, bottle in named if bottle not in shelf) == []
+
+
+def test_no_shelf_holds_a_listed_amine_or_an_energetic_start() -> None:
+    library = load_library()
+    listed = {amine.smiles for amine in load_rules(library).amines}
+    for name in shelf_names():
+        items = read_shelf(name)
+        assert [item.name for item in items if item.smiles in listed] == []
+        starts = [i for i in items if {"phenol", "naphthol", "aniline", "arene", "dye"} & set(i.roles)]
+        withheld = [f.smiles for f in screen([i.smiles for i in starts], library) if f.withheld]
+        assert withheld == []

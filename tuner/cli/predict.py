@@ -69,11 +69,11 @@ def run(
 def predictor(medium: Medium, overlay: Path | None) -> Callable[[str], Prediction]:
     """A function from SMILES to prediction; the medium is checked here."""
     from tuner.acidity.medium import require_valid
-    from tuner.library import load_library
     from tuner.prediction.door import predict_molecule
+    from tuner.structure.own_library import load_checked_library
 
     require_valid(medium)
-    library = load_library(overlay)
+    library = load_checked_library(overlay)
     return lambda smiles: predict_molecule(smiles, medium, library)
 
 

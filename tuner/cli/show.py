@@ -14,9 +14,18 @@ from tuner.library.records import Core, Series, StockItem, Value
 from tuner.report.digits import MISSING, signed
 
 
+def _library(overlay: Path | None) -> Library:
+    """The library; a user's own rows are checked by the chemistry toolkit, which is loaded only then."""
+    if overlay is None:
+        return load_library()
+    from tuner.structure.own_library import load_checked_library
+
+    return load_checked_library(overlay)
+
+
 def run(kind: str, name: str, overlay: Path | None, svg: Path | None) -> None:
     """Print the table of one kind, or one entry of it."""
-    library = load_library(overlay)
+    library = _library(overlay)
     if svg is not None and not (kind == "cores" and name):
         raise TunerError(
             "only one core is drawn", place="--out", remedy="write tuner show cores NAME --out FILE.svg"

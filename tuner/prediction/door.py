@@ -237,10 +237,10 @@ def _door(version: str, overlay: str, medium: Medium) -> MoleculeDoor:
     """Kept doors; the library's version and folder stand for the library."""
     from pathlib import Path
 
-    from tuner.library import load_library
     from tuner.prediction.acidity_face import shipped_model
+    from tuner.structure.own_library import load_checked_library
 
-    library = load_library(Path(overlay) if overlay else None)
+    library = load_checked_library(Path(overlay) if overlay else None)
     return MoleculeDoor(library, shipped_model(library), medium)
 
 

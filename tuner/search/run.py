@@ -9,7 +9,7 @@ from pathlib import Path
 from tempfile import gettempdir
 
 from tuner.brief.records import Brief
-from tuner.library import Library, load_library
+from tuner.library import Library
 from tuner.search.exact import Search
 from tuner.search.finalists import Judge, removed_lines
 from tuner.search.found import Found
@@ -22,6 +22,7 @@ from tuner.search.strategy import Method, choose_method, nothing_left, require_r
 from tuner.search.survey import summaries
 from tuner.search.tables import PKA_UNIT, Goal, SpaceTables
 from tuner.search.user_objective import UserObjective, load_objective
+from tuner.structure.own_library import load_checked_library
 
 TABLES = "filling look-up tables"
 
@@ -54,7 +55,7 @@ def design(
         that exclude everything, a cluster that is not there.
     """
     stages = Stages(progress)
-    rooms = Rooms(brief, library or load_library(brief.overlay))
+    rooms = Rooms(brief, library or load_checked_library(brief.overlay))
     user = _user_objective(brief)
     with stages.timed("space"):
         summary = summaries(rooms.space)

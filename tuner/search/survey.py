@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from tuner.brief.records import Brief
-from tuner.library import Library, load_library
+from tuner.library import Library
 from tuner.search.build import count_analogs
 from tuner.search.result import SpaceSummary
 from tuner.search.rooms import Rooms
 from tuner.search.space import CoreSpace, DesignSpace
+from tuner.structure.own_library import load_checked_library
 
 
 def survey(brief: Brief, library: Library | None = None) -> tuple[SpaceSummary, ...]:
@@ -18,7 +19,7 @@ def survey(brief: Brief, library: Library | None = None) -> tuple[SpaceSummary, 
     TunerError
         Whatever would stop the search as well: reagents that are not known, nothing to choose from.
     """
-    rooms = Rooms(brief, library or load_library(brief.overlay))
+    rooms = Rooms(brief, library or load_checked_library(brief.overlay))
     return summaries(rooms.space)
 
 
