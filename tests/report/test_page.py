@@ -163,13 +163,11 @@ def test_a_picture_of_nothing_is_empty() -> None:
 
 def test_a_drawing_follows_the_colours_of_the_page() -> None:
     backdrop = "<rect style='opacity:1.0;fill:#FFFFFF;stroke:none' width='9' height='4'> </rect>"
-    line = "<path style='stroke:#000000;stroke-width:2px' d='M0 0'/>"
+    line = "<path class='bond' d='M0 0' style='stroke:#000000' />\n<path d='M1 1' style='stroke:#000000'/>"
     head = "<?xml version='1.0'?>\n<svg width='9px' height='4px' viewBox='0 0 9 4'><!-- x -->"
     svg = f"{head}{backdrop}{line}</svg>"
-    assert (
-        themed(svg)
-        == "<svg viewBox='0 0 9 4'><path style='stroke:currentColor;stroke-width:2px' d='M0 0'/></svg>"
-    )
+    path = "<path d='M0 0 M1 1' style='stroke:currentColor'/>"
+    assert themed(svg) == f"<svg viewBox='0 0 9 4'>{path}</svg>"
 
 
 def test_a_scale_of_one_point_stays_on_the_page() -> None:
