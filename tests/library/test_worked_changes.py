@@ -11,6 +11,8 @@ from pathlib import Path
 import pytest
 
 from tuner.library import load_library
+from tuner.library.folders import data_folder
+from tuner.library.reactions import load_reactions
 from tuner.library.stock import read_shelf
 from tuner.prediction.door import predict_molecule
 from tuner.screening.screen import flag_names, screen
@@ -69,6 +71,15 @@ def test_a_shelf(own: Path) -> None:
     items = read_shelf(path, canonical=canonical_smiles)
     assert [item.in_stock for item in items] == [True, True, False]
     assert all(item.roles for item in items)
+
+
+def test_a_reaction(own: Path) -> None:
+    shipped = (data_folder() / "reactions.toml").read_text(encoding="utf-8")
+    path = own / "reactions.toml"
+    path.write_text(shipped + printed("reactions.toml"), encoding="utf-8")
+    book = load_reactions(load_library().substituents, path)
+    dakin = next(rule for rule in book.reactions if rule.name == "Dakin oxidation")
+    assert (dakin.takes, dict(dakin.gives)) == (("CHO",), {"OH": ""})
 
 
 def test_a_rule_of_caution(own: Path) -> None:
