@@ -36,6 +36,10 @@ CLOSE_SD = 0.15
 SCALE_PH = (-12.0, 16.0)
 """Constants outside this range are not given: no acidity scale in water reaches there."""
 WATER_PH = (0.0, 14.0)
+MACROSCOPIC_SD_LIMIT = 0.8
+"""Stepwise constants of a molecule are left out where the least sure of them is less sure than this (pKa
+units).
+"""
 OWN_STEP = 0.75  # a step in which the reporting site loses more than this share of its proton is its own
 GOOD_PART = 0.35
 
@@ -165,6 +169,10 @@ class MoleculeDoor:
         notes += _range_notes(pka)
         intercept, slope = table.ions[0].effect.temperature_line(ionisation.charge_around(0, states, pka))
         inside = [(p, s, k) for p, s, k in macroscopic if SCALE_PH[0] <= p <= SCALE_PH[1]]
+        doubt = max((s for _, s, _ in inside), default=0.0)
+        if doubt > MACROSCOPIC_SD_LIMIT:
+            notes.append(f"constants of the whole molecule are too unsure to be given (+-{doubt:.1f})")
+            inside = []
         beyond = not SCALE_PH[0] <= pka <= SCALE_PH[1]
         return replace(
             answer,

@@ -40,6 +40,7 @@ RING_META, RING_PARA, RING_MINUS = 0.25, 0.32, 0.30  # share of a constant throu
 RING_FAR = 0.20
 LINK = {"O": 0.60, "S": 0.50, "N": 0.50, "C": 0.40, "P": 0.40, "Si": 0.40, "B": 0.40, "Se": 0.50, "As": 0.40}
 DOUBLE_META, DOUBLE_PARA, DOUBLE_MINUS = 0.40, 0.40, 0.63  # through C=C, N=N, C=N
+PARA_METHYL, ORTHO_METHYL, ORTHO_OVER_PARA, ORTHO_CHAIN_SD = -0.17, -0.13, 1.5, 0.2
 BASE_SD, RELATIVE_SD, BLIND_SD = 0.06, 0.35, 0.30
 MOST_STEPS = 12  # of simplification; chains longer than this do not change any more
 
@@ -154,8 +155,8 @@ class Estimator:
             sigma_meta=Value(effect.meta, sd),
             sigma_para=Value(effect.para, 1.3 * sd),
             sigma_para_minus=Value(effect.minus, 1.6 * sd),
-            sigma_ortho_phenol=Value(),
-            sigma_ortho_aniline=Value(),
+            sigma_ortho_phenol=_ortho_of_charged_chain(built, effect),
+            sigma_ortho_aniline=_ortho_of_charged_chain(built, effect),
             field_effect=effect.field,
             resonance=effect.para - effect.field,
             bulk=made.bulk,
@@ -299,6 +300,16 @@ class Estimator:
         return _Estimate(
             Effect(field, field, 1.4 * field, field, BLIND_SD), "", min(3, max(1, len(built.branches)))
         )
+
+
+def _ortho_of_charged_chain(built: Anatomy, effect: Effect) -> Value:
+    """Apparent ortho constant of a chain that carries a charge; unknown for every other group.
+
+    One and a half times what the charge adds at para (ammoniomethyl, dimethylammoniomethyl, ammonioethyl).
+    """
+    if not built.charge or built.symbol != "C" or built.ring or any(b.order > 1 for b in built.branches):
+        return Value()
+    return Value(ORTHO_METHYL + ORTHO_OVER_PARA * (effect.para - PARA_METHYL), ORTHO_CHAIN_SD)
 
 
 def _short_name(text: str) -> str:

@@ -34,12 +34,12 @@ class HeldPair:
 HELD_PAIRS: dict[str, HeldPair] = {
     "phenolsulfonephthalein": HeldPair(2, 1.2, 0.4, False, "Perrin1972"),
     "phenolphthalein": HeldPair(2, 9.05, 0.3, True, "memory:Bishop1972"),
-    "1,8-dihydroxynaphthalene": HeldPair(1, 15.0, 0.8, True, "memory:Bishop1972"),
+    "1,8-dihydroxynaphthalene": HeldPair(1, 15.0, 0.7, True, "memory:Bishop1972"),
 }
 """Cores with two equal groups whose steps are not independent."""
 
 HELD_OTHER: dict[str, tuple[float, float]] = {
-    "phenylazochromotropic acid": (13.8, 0.8),
+    "phenylazochromotropic acid": (13.8, 0.7),
 }
 """pKa and standard error of a hydroxyl inside the core that is bound by a hydrogen bond and does not
 report.
@@ -50,7 +50,7 @@ COUNTED_IN_PARENT = ("fluorescein", "phenylazochromotropic acid")
 
 DIHYDROXYAZO = "[OX2H1]-c:c-[NX2]=[NX2]-c:c-[OX2H1]"
 DIHYDROXYAZO_SHIFT = 1.6
-DIHYDROXYAZO_SD = 0.7
+DIHYDROXYAZO_SD = 0.6
 """o,o'-Dihydroxyazo dyes: both hydroxyls' pKa's fall by this much while the other holds its proton, and rise
 by as much above
 their own once it is gone. Sized on calcon-type dyes (Serjeant1979), rounded."""

@@ -198,11 +198,13 @@ class Ionisation:
     def coupling_sd(self, k: int) -> float:
         """Standard error of site k's constants by what the other free sites do to it (pKa units).
 
-        Constants of charged neighbours, hydrogen bonds and tautomers are known less well than those of
+        Pairs whose energy was fixed beforehand carry their own error. Constants of charged neighbours,
+        hydrogen bonds and tautomers are known less well than those of
         neutral groups;
         sized on molecules with two and more sites so that stated intervals hold.
         """
-        felt = sum(abs(self.energy(k, j)) for j in self.free if j != k)
+        own = [j for j in self.free if j != k and (k, j) not in self._energies]
+        felt = sum(abs(self.energy(k, j)) for j in own)
         if not felt:
             return 0.0
         return min(COUPLING_SD_MOST, COUPLING_SD_LEAST + COUPLING_SD_SHARE * felt)

@@ -37,7 +37,7 @@ ORTHO_BULK = 0.25  # fall for any ortho group that has a size, by twist out of t
 ORTHO_DONOR = 0.45  # fall for an ortho group that gives a hydrogen bond to the carboxylate
 ORTHO_ETHER = 0.75  # rise for an ortho ether, which takes the acid's hydrogen bond
 BOTH_ORTHO_HYDROXYL = 0.65  # further fall where two hydroxyls bind the carboxylate
-ORTHO_AMINO = 1.0  # rise for an ortho amino group, in place of the donor term
+ORTHO_AMINO = 0.75  # rise for an ortho amino group, in place of the donor term
 """Set on 2-chloro-, 2-methyl-, 2-nitro-, 2-hydroxy- and 2-methoxybenzoic acid as remembered; common
 practice, no source.
 """
