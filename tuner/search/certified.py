@@ -30,7 +30,7 @@ from tuner.search.result import Progress
 from tuner.search.standing import Standing
 from tuner.search.tables import Int64
 
-CHILDREN_AT_ONCE = 2**17
+CHILDREN_AT_ONCE = 2**16
 """Children bounded in one step: arrays of about 1 MiB."""
 
 MOST_PREFIXES = 3_000_000_000
@@ -74,19 +74,19 @@ class Tree:
         evaluated.
         """
         tables, bounds = self.search.spaces[batch.space], self.bounds[batch.space]
-        index = batch.index[bounds.at(batch.index).useful(self.standing)]
+        index = batch.index[bounds.useful(batch.index, self.standing)]
         depth = index.shape[1]
         choices = tables.shape[depth]
         if not len(index):
             return [], len(batch.index), 0
-        found = bounds.children(index)
-        parent, choice = np.nonzero(found.useful(self.standing))
+        useful, score = bounds.useful_children(index, self.standing)
+        parent, choice = np.nonzero(useful)
         children = np.concatenate((index[parent], choice[:, None]), axis=1)
         counted = len(batch.index) + len(index) * choices
         if depth + 1 == len(tables.shape):
             self.standing.offer(evaluate_admitted(tables, self.search.goal, children))
             return [], counted, len(children)
-        return self._batches(batch.space, children, found.score[parent, choice]), counted, 0
+        return self._batches(batch.space, children, score[parent, choice]), counted, 0
 
     def run(self, enough: int = 0) -> None:
         """Work off the open batches here and now, until none is left or, if asked, `enough` are open."""

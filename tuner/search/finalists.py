@@ -18,6 +18,7 @@ import numpy as np
 from tuner.brief.records import Brief, Target
 from tuner.errors import BriefError
 from tuner.prediction.records import Prediction
+from tuner.screening.records import Flags
 from tuner.search.molecules import has_anchor, smiles_of
 from tuner.search.probability import Interval, hit_probability
 from tuner.search.result import OtherTarget
@@ -26,7 +27,7 @@ from tuner.search.rows import Analogs
 from tuner.search.tables import Goal
 from tuner.search.targets import SWITCHES, probability, window
 from tuner.search.user_objective import UserObjective
-from tuner.structure.molecule import properties
+from tuner.structure.molecule import Properties, properties
 
 EXCLUDE, PENALISE = "exclude", "penalise"
 MEASURED_SD = 0.03
@@ -37,7 +38,7 @@ data scatter.
 
 @dataclass(frozen=True)
 class Finalist:
-    """One analog as a molecule. `place` is its row in the pool; pKa values are conditional, in the target's
+    """One analog as a molecule. pKa values are conditional, in the target's
     medium.
     """
 
@@ -45,22 +46,22 @@ class Finalist:
     smiles: str
     pka: float
     sd: float
-    hit: float
-    offset: float  # worst distance over the targets at which it must switch, not negative
     steps: int
-    mass: float
-    score: float
+    mass: float  # g/mol
     other_costs: float  # flags and the user's own objective, in hit probability
-    dpka_dt: float
     clogp: float
-    tpsa: float
-    measured: float
-    measured_source: str
-    macroscopic: tuple[float, ...]
+    tpsa: float  # square Angstrom
     flags: tuple[str, ...]
     cautions: tuple[str, ...]
-    notes: tuple[str, ...]
-    others: tuple[OtherTarget, ...]
+    hit: float = nan
+    offset: float = nan  # worst distance over the targets at which it must switch, not negative
+    score: float = nan
+    dpka_dt: float = nan  # per kelvin
+    measured: float = nan
+    measured_source: str = ""
+    macroscopic: tuple[float, ...] = ()
+    notes: tuple[str, ...] = ()
+    others: tuple[OtherTarget, ...] = ()
 
 
 class Judge:
@@ -73,7 +74,7 @@ class Judge:
         self.user = user
         self.removed: Counter[str] = Counter()
         self._known: dict[tuple[int, ...], Finalist | None] = {}
-        self._by_smiles: dict[str, tuple[int, ...]] = {}
+        self._seen: set[str] = set()
         self._actions = dict(self.brief.limits.flags)
 
     def finalists(self, rows: Analogs) -> list[Finalist]:
@@ -91,40 +92,56 @@ class Judge:
         return self._known[key]
 
     def _first_look(self, rows: Analogs, n: int, key: tuple[int, ...]) -> Finalist | None:
-        space = self.rooms.space.spaces[key[0]]
-        smiles = smiles_of(space, key[1:])
-        if smiles in self._by_smiles:
+        """Build, check and predict an analog that has not been looked at."""
+        smiles = smiles_of(self.rooms.space.spaces[key[0]], key[1:])
+        if smiles in self._seen:
             return self._set_aside("the same molecule from another core")
-        self._by_smiles[smiles] = key
-        found = properties(smiles)
+        self._seen.add(smiles)
+        found, screened = properties(smiles), self.rooms.screen(smiles)
+        why = self._refused(found, screened)
+        if why:
+            return self._set_aside(why)
+        costs = self._other_costs(smiles, screened)
+        if isnan(costs):
+            return self._set_aside("the user's own objective fails")
+        plain = Finalist(
+            key=key,
+            smiles=smiles,
+            pka=float(rows.pka_values[n]),
+            sd=float(rows.sd[n]),
+            steps=int(rows.steps[n]),
+            mass=float(rows.mass_values[n]),
+            other_costs=costs,
+            clogp=found.clogp,
+            tpsa=found.tpsa_a2,
+            flags=screened.names,
+            cautions=tuple(flag.words for flag in screened.flags),
+        )
+        return self._predicted(plain)
+
+    def _refused(self, found: Properties, screened: Flags) -> str:
+        """Which limit on the molecule refuses an analog; "" for none."""
         limits = self.brief.limits
         if not limits.min_clogp <= found.clogp <= limits.max_clogp:
-            return self._set_aside("calculated logP outside the limits")
+            return "calculated logP outside the limits"
         if found.tpsa_a2 > limits.max_tpsa_a2:
-            return self._set_aside(f"polar surface above {limits.max_tpsa_a2:g} Å²")
-        screened = self.rooms.screen(smiles)
+            return f"polar surface above {limits.max_tpsa_a2:g} Å²"
         if screened.withheld:
-            return self._set_aside("energetic")
-        for name in screened.names:
-            if self._actions.get(name) == EXCLUDE:
-                return self._set_aside(f"flag: {name}")
-        penalties = sum(
-            any(self._actions.get(w) == PENALISE for w in (f.rule, f.kind)) for f in screened.flags
-        )
-        costs = self.brief.ranking.flag_costs * penalties
+            return "energetic"
+        barred = [name for name in screened.names if self._actions.get(name) == EXCLUDE]
+        return f"flag: {barred[0]}" if barred else ""
+
+    def _other_costs(self, smiles: str, screened: Flags) -> float:
+        """What penalised flags and the user's own objective cost, in hit probability; NaN where the latter
+        fails.
+        """
+        penalised = [
+            f for f in screened.flags if PENALISE in (self._actions.get(f.rule), self._actions.get(f.kind))
+        ]
+        costs = self.brief.ranking.flag_costs * len(penalised)
         if self.user is not None:
-            value = self.user(smiles)
-            if isnan(value):
-                return self._set_aside("the user's own objective fails")
-            costs += self.brief.ranking.user_objective_costs * value
-        plain = Finalist(
-            key=key, smiles=smiles, pka=float(rows.pka_values[n]), sd=float(rows.sd[n]), hit=float(rows.hit[n]),
-            offset=float(rows.offset_values[n]), steps=int(rows.steps[n]), mass=float(rows.mass_values[n]),
-            score=0.0, other_costs=costs, dpka_dt=nan, clogp=found.clogp, tpsa=found.tpsa_a2, measured=nan,
-            measured_source="", macroscopic=(), flags=screened.names,
-            cautions=tuple(flag.words for flag in screened.flags), notes=(), others=(),
-        )  # fmt: skip
-        return self._predicted(plain)
+            costs += self.brief.ranking.user_objective_costs * self.user(smiles)
+        return costs
 
     def nothing_passed(self) -> BriefError:
         """The error of molecules that all fail the limits: which limit removed how many."""
@@ -132,8 +149,10 @@ class Judge:
         what = f"no candidate is left: of the {sum(self.removed.values()):,} best analogs, {listed}"
         return BriefError(what, remedy="loosen the limit that removes most")
 
-    def _set_aside(self, why: str) -> None:
+    def _set_aside(self, why: str) -> Finalist | None:
+        """Count an analog that is set aside; gives None."""
         self.removed[why] += 1
+        return None
 
     def _predicted(self, plain: Finalist) -> Finalist | None:
         """The same analog with what the molecule door says about it."""

@@ -17,6 +17,13 @@ NITROGEN_FAMILIES = ("hydrogen", "alkyl", "substituted alkyl", "aryl")
 reports nothing.
 """
 
+AMINES = ("anilinium", "n_alkyl_anilinium", "nn_dialkyl_anilinium")
+
+COMPETING_SD = 0.5
+"""pKa units added to the error of an analog for each group that competes for the proton: the look-up tables
+treat it in one form, while the molecule door sums over both; typical difference of the two, found by
+running both."""
+
 NEAR_PH = 1.5
 """A group whose own pKa lies within this distance of the target is partly ionised there; common practice,
 no source.
@@ -84,6 +91,14 @@ def acting_form(group: Substituent, target_ph: float, library: Library) -> Subst
     other = library.substituents[group.other_form]
     acid, base = (group, other) if group.charge > other.charge else (other, group)
     return acid if target_ph < pka else base
+
+
+def competes(group: Substituent, series: str, target_ph: float, library: Library) -> bool:
+    """Whether a group takes or gives its proton near where the reporting group does: it is of the same kind
+    (a second hydroxyl on a phenol, a second amino group on an aniline), or its own pKa is near the target.
+    """
+    kinds = AMINES if series in AMINES else (series,)
+    return bool(group.other_form) and (group.ionises in kinds or near_target(group, target_ph, library))
 
 
 def near_target(group: Substituent, target_ph: float, library: Library) -> bool:

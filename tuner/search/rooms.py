@@ -21,9 +21,9 @@ from tuner.prediction.records import Prediction
 from tuner.screening.records import Flags
 from tuner.screening.screen import screen
 from tuner.search.build import build_space
-from tuner.search.palette import near_target, own_pka
+from tuner.search.palette import COMPETING_SD, competes, near_target, own_pka
 from tuner.search.shelf import Shelf
-from tuner.search.space import CoreSpace, DesignSpace
+from tuner.search.space import Choice, CoreSpace, DesignSpace
 from tuner.search.tables import FLAG_UNIT, MASS_UNIT, PKA_UNIT, Goal, SpaceTables, fixed_sum
 from tuner.search.targets import condition
 from tuner.structure.molecule import molar_mass
@@ -84,7 +84,18 @@ class Rooms:
     def _plain(self, space: CoreSpace) -> tuple[PairwiseSum, PairwiseSum, PairwiseSum]:
         """pKa25, variance and charge tables of a space."""
         found = self.model.tables(space.prepared, [[c.acting for c in listed] for listed in space.choices])
-        return found.pka25, found.variance, found.charge
+        doubt = tuple(
+            np.array([COMPETING_SD**2 * self._competes(choice, space) for choice in listed])
+            for listed in space.choices
+        )
+        unary = tuple(own + more for own, more in zip(found.variance.unary, doubt, strict=True))
+        variance = PairwiseSum(found.variance.base, unary, found.variance.pair)
+        return found.pka25, variance, found.charge
+
+    def _competes(self, choice: Choice, space: CoreSpace) -> bool:
+        """Whether a choice makes the transition doubtful; a bound handle does not."""
+        ph = self.brief.target.ph
+        return not choice.is_anchor and competes(choice.free, space.prepared.series, ph, self.library)
 
     def series_of(self, space: CoreSpace) -> Series:
         """The equilibrium that reports: for amines by the number of groups on the nitrogen."""

@@ -8,7 +8,7 @@ import numpy as np
 
 from tuner.search.bounds import seed_rows
 from tuner.search.counting import within_limits
-from tuner.search.spans import find_budget
+from tuner.search.spans import budget_of
 from tuner.search.symmetry import canonical_form
 from tuner.search.tables import Int64, SpaceTables
 
@@ -39,8 +39,7 @@ def sample_rows(tables: SpaceTables, n: int, seed: int) -> Int64:
 def _drawn(tables: SpaceTables, n: int, rng: np.random.Generator) -> Int64:
     """Random patterns, three times as many as asked for, those with few groups added."""
     positions = len(tables.shape)
-    budget = find_budget(tables.limits)
-    most = positions if budget is None else min(positions, max(0, budget.high))
+    most = max(0, budget_of(tables.shape, tables.limits).high)
     count = 3 * n
     wanted = rng.integers(0, most + 1, count)
     order = np.argsort(rng.random((count, positions)), axis=1)

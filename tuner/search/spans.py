@@ -1,14 +1,16 @@
-"""Between which values does a sum lie once its first choices are fixed?
+"""Between which values does a sum lie once its first choices are fixed and so many groups are to follow?
 
 For each free position the best choice is taken given the fixed ones; pair terms among free positions enter
-by the best partner of each choice. The span therefore holds every completion, and is exact where free
-positions do not couple. Where a counting limit leaves only a few more groups to place (the budget), only
-that many free positions may move away from their cheapest choice.
+by the best partner of each choice. A span therefore holds every completion, and is exact where free
+positions do not couple. Spans are kept apart by the number of further groups: steps, mass and error grow
+with every group, so a prefix that needs two more groups to reach the target can be dropped although none and
+one would be cheap.
 """
 
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -17,21 +19,21 @@ from tuner.acidity.tables import IntArray
 from tuner.search.space import CountLimit
 from tuner.search.tables import FixedSum, Int32, Int64
 
-ROWS_AT_ONCE = 4096
-"""Prefixes per step, so that (prefixes x free choices) arrays stay within a few MiB."""
-
 Whole = NDArray[np.int64]
+
+FAR = 2**40
+"""Sum of a completion that does not exist: far beyond anything that a table can add up to."""
 
 
 class Budget:
-    """A limit of the kind 'at most so many groups': every choice weighs 0 or 1."""
+    """Which choices count as groups (weight 1, else 0), and how many there may be."""
 
-    def __init__(self, limit: CountLimit) -> None:
-        self.weights = limit.weights
-        self.high = limit.high
+    def __init__(self, weights: Sequence[NDArray[np.int64]], high: int) -> None:
+        self.weights = tuple(weights)
+        self.high = high
 
     def left(self, index: IntArray) -> Int64:
-        """How many more may be placed, shape (n, depth) -> (n,); negative where the limit is broken
+        """How many more groups may be placed, shape (n, depth) -> (n,); negative where there are too many
         already.
         """
         used = np.zeros(len(index), dtype=np.int64)
@@ -40,26 +42,48 @@ class Budget:
         return self.high - used
 
 
-def find_budget(limits: Sequence[CountLimit]) -> Budget | None:
-    """The tightest limit that can serve as a budget, or None."""
+def budget_of(shape: Sequence[int], limits: Sequence[CountLimit]) -> Budget:
+    """The tightest limit of the kind 'at most so many', or else any number of choices other than the
+    first.
+    """
     fit = [
         limit
         for limit in limits
-        if all(len(w) and w.min() == 0 and w.max() <= 1 for w in limit.weights)
-        and any(w.max() for w in limit.weights)
+        if all(len(w) and w.min() >= 0 and w.max() <= 1 for w in limit.weights)
+        and sum(int(w.sum()) for w in limit.weights) * 2 > sum(shape)
     ]
-    return Budget(min(fit, key=lambda limit: limit.high)) if fit else None
+    if fit:
+        best = min(fit, key=lambda limit: limit.high)
+        return Budget(best.weights, min(best.high, len(shape)))
+    return Budget([(np.arange(n) > 0).astype(np.int64) for n in shape], len(shape))
+
+
+@dataclass(frozen=True)
+class Split:
+    """Lowest and highest sums as own part (n, choices) plus rest by number of further groups (n, 0..m)."""
+
+    own_low: Whole
+    own_high: Whole
+    rest_low: Whole
+    rest_high: Whole
+
+    def low(self) -> Whole:
+        """Shape (n, choices, groups)."""
+        return self.own_low[:, :, None] + self.rest_low[:, None, :]
+
+    def high(self) -> Whole:
+        """Shape (n, choices, groups)."""
+        return self.own_high[:, :, None] + self.rest_high[:, None, :]
 
 
 class SumSpan:
-    """Lowest and highest value of a `FixedSum` over the completions of prefixes of length `depth`."""
+    """Spans of a `FixedSum` over the completions of prefixes of length `depth`."""
 
-    def __init__(self, table: FixedSum, depth: int, budget: Budget | None) -> None:
+    def __init__(self, table: FixedSum, depth: int, budget: Budget) -> None:
         self.table = table
         self.depth = depth
         free = table.unary[depth:]
-        widths = [len(t) for t in free]
-        self._ends = np.cumsum([0, *widths]).astype(np.intp)
+        self._ends = np.cumsum([0, *(len(t) for t in free)]).astype(np.intp)
         self._own = np.concatenate(free).astype(np.int32) if free else np.zeros(0, dtype=np.int32)
         self._low, self._high = self._own.copy(), self._own.copy()
         for (p, _), pair in table.pair.items():
@@ -67,11 +91,11 @@ class SumSpan:
                 at = slice(self._ends[p - depth], self._ends[p - depth + 1])
                 self._low[at] += pair.min(axis=1)
                 self._high[at] += pair.max(axis=1)
+        self._group = (
+            np.concatenate([w > 0 for w in budget.weights[depth:]]) if free else np.zeros(0, dtype=np.bool_)
+        )
         self._cross = {p: self._cross_table(p) for p in range(depth) if self._couples(p)}
         self._next_low, self._next_high = self._next_partners()
-        self._free_of_cost = None
-        if budget is not None and free:
-            self._free_of_cost = np.concatenate([w == 0 for w in budget.weights[depth:]])
 
     def _couples(self, p: int) -> bool:
         return any(a == p and b >= self.depth for a, b in self.table.pair)
@@ -121,70 +145,54 @@ class SumSpan:
             total += table[index[:, p]]
         return total
 
-    def range(self, index: IntArray, left: Int64 | None) -> tuple[Int64, Int64]:
-        """Lowest and highest total of every row, (n, depth) -> two of (n,); `left` is the budget of each
-        row.
-        """
-        lows, highs = np.empty(len(index), dtype=np.int64), np.empty(len(index), dtype=np.int64)
-        for start in range(0, len(index), ROWS_AT_ONCE):
-            at = slice(start, start + ROWS_AT_ONCE)
-            budget = None if left is None else left[at]
-            rows, shift = index[at], self.shift(index[at])
-            lows[at] = _spent(*self._least(shift, len(rows), 0), budget)
-            highs[at] = -_spent(*self._least(shift, len(rows), 0, negative=True), budget)
-        fixed = self.fixed(index)
-        return fixed + lows, fixed + highs
+    def prefixes(self, index: IntArray) -> Split:
+        """Spans of the prefixes themselves: one 'choice' each."""
+        fixed, shift = self.fixed(index)[:, None], self.shift(index)
+        low, high = self._rest(shift, len(index), 0), self._rest(shift, len(index), 0, negative=True)
+        return Split(fixed, fixed, low, -high)
 
-    def children(self, index: IntArray, left: Int64 | None) -> tuple[Int64, Int64]:
-        """Lowest and highest total of every row with each choice at the next position: two of (n, choices).
-
-        `left`, shape (n, choices), is the budget after that choice.
-        """
+    def children(self, index: IntArray) -> Split:
+        """Spans of the prefixes with every choice at the next position."""
         shift = self.shift(index)
-        width = int(self._ends[1])
-        own = self.fixed(index)[:, None] + self._own[:width]
+        own = self.fixed(index)[:, None] + self._own[: int(self._ends[1])]
         if shift is not None:
-            own = own + shift[:, :width]
-        lows = _spent(*self._least(shift, len(index), 1), left)
-        highs = _spent(*self._least(shift, len(index), 1, negative=True), left)
-        if lows.ndim == 1:
-            lows, highs = lows[:, None], highs[:, None]
-        return own + self._next_low + lows, own + self._next_high - highs
+            own = own + shift[:, : int(self._ends[1])]
+        low, high = self._rest(shift, len(index), 1), self._rest(shift, len(index), 1, negative=True)
+        return Split(own + self._next_low, own + self._next_high, low, -high)
 
-    def _least(
-        self, shift: Int32 | None, n: int, first: int, *, negative: bool = False
-    ) -> tuple[Whole, Whole | None]:
-        """Least value at every free position from `first` on, over all choices and over those that cost no
-        budget.
+    def _rest(self, shift: Int32 | None, n: int, first: int, *, negative: bool = False) -> Whole:
+        """Least sum over the free positions from `first` on, with exactly 0, 1, ... groups: shape (n,
+        positions + 1).
+
+        With `negative` the least sum of the negated values. A number of groups that cannot be gives at
+        least `FAR`.
         """
         start = int(self._ends[first])
         bounds = (self._ends[first:-1] - start).astype(np.intp)
         values = (-self._high if negative else self._low)[start:]
         if len(values) == 0:
-            return np.zeros((n, 0), dtype=np.int64), None
+            return np.zeros((n, 1), dtype=np.int64)
+        moved = values[None, :]
         if shift is not None:
             moved = values - shift[:, start:] if negative else values + shift[:, start:]
-        else:
-            moved = values[None, :]
-        least = np.minimum.reduceat(moved, bounds, axis=1).astype(np.int64)
-        if self._free_of_cost is None:
-            return np.broadcast_to(least, (n, least.shape[1])), None
-        costly = ~self._free_of_cost[start:]
-        cheap = np.minimum.reduceat(np.where(costly, np.iinfo(np.int32).max, moved), bounds, axis=1)
-        shape = (n, least.shape[1])
-        return np.broadcast_to(least, shape), np.broadcast_to(cheap.astype(np.int64), shape)
+        group = self._group[start:]
+        top = np.iinfo(np.int32).max
+        empty = np.minimum.reduceat(np.where(group, top, moved), bounds, axis=1).astype(np.int64)
+        filled = np.minimum.reduceat(np.where(group, moved, top), bounds, axis=1).astype(np.int64)
+        empty[empty == top] = FAR
+        filled[filled == top] = 3 * FAR
+        more = np.sort(filled - empty, axis=1)
+        totals = np.concatenate((np.zeros((len(more), 1), dtype=np.int64), np.cumsum(more, axis=1)), axis=1)
+        totals += empty.sum(axis=1)[:, None]
+        return np.broadcast_to(totals, (n, totals.shape[1]))
 
 
-def _spent(least: Whole, cheap: Whole | None, left: Int64 | None) -> Int64:
-    """Least sum over positions when only `left` of them may leave their cheap choice; (n,) or (n, choices)
-    as `left`.
+def total_span(split: Split, left: Int64) -> tuple[Int64, Int64]:
+    """Lowest and highest total of every prefix over all numbers of further groups that the budget allows:
+    two of (n,).
     """
-    if cheap is None or left is None:
-        return np.asarray(least.sum(axis=1))
-    gains = np.sort(np.minimum(least - cheap, 0), axis=1)
-    totals = np.concatenate((np.zeros((len(gains), 1), dtype=np.int64), np.cumsum(gains, axis=1)), axis=1)
-    totals += cheap.sum(axis=1)[:, None]
-    moves = np.clip(left, 0, gains.shape[1])
-    if left.ndim == 1:
-        return np.asarray(totals[np.arange(len(totals)), moves])
-    return np.asarray(np.take_along_axis(totals, moves, axis=1))
+    groups = np.arange(split.rest_low.shape[1])
+    allowed = groups[None, :] <= np.maximum(left, 0)[:, None]
+    low = np.where(allowed, split.rest_low, 4 * FAR).min(axis=1)
+    high = np.where(allowed, split.rest_high, -4 * FAR).max(axis=1)
+    return split.own_low[:, 0] + low, split.own_high[:, 0] + high

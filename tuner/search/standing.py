@@ -83,6 +83,7 @@ class Standing:
         self.best = no_analogs()
         self._lock = Lock()
         self._stairs: list[tuple[Int64, Int64]] = []
+        self._closest = np.zeros((0, 2), dtype=np.int64)
 
     def offer(self, rows: Analogs) -> None:
         """Take in evaluated analogs; symmetry duplicates and analogs beyond limits must have been left
@@ -95,6 +96,7 @@ class Standing:
             self.front = self._front_of(join((self.front, front)))
             self.best = self._best_of(join((self.best, best)))
             self._stairs = self._new_stairs()
+            self._closest = _closest_points(self._stairs)
 
     def merge(self, other: Standing) -> None:
         """Take in what another search found; the order of merging does not matter."""
@@ -127,6 +129,21 @@ class Standing:
             ceiling[rows] = np.minimum(np.minimum(strict, fewer), kept)
         return ceiling
 
+    def may_join_front(self, offset: Int64, steps: Int64, mass: Int64) -> Mask:
+        """True where an analog with at least these whole-number objectives could add to the front; arrays
+        (n,).
+        """
+        good = np.ones(len(offset), dtype=np.bool_)
+        closest = self._closest
+        if not len(closest) or not len(offset):
+            return good
+        whole = offset // self.resolution
+        best = closest[np.minimum(steps, len(closest) - 1)]
+        good &= (whole < best[:, 0]) | (mass <= best[:, 1])
+        rest = np.flatnonzero(good)
+        good[rest] = whole[rest] < self.offset_ceiling(steps[rest], mass[rest])
+        return good
+
     def _front_of(self, rows: Analogs) -> Analogs:
         order = np.lexsort((*order_keys(rows), rows.offset))
         return rows.take(front_rows(rows.offset // self.resolution, rows.steps, rows.mass, order))
@@ -142,6 +159,17 @@ class Standing:
             _staircase(front.mass[front.steps <= s], offset[front.steps <= s])
             for s in range(int(front.steps.max(initial=-1)) + 1)
         ]
+
+
+def _closest_points(stairs: list[tuple[Int64, Int64]]) -> Int64:
+    """For each number of steps: the least offset of any point with so many or fewer, and the least mass
+    with it.
+    """
+    points = np.full((len(stairs), 2), NEVER, dtype=np.int64)
+    for level, (mass, offset) in enumerate(stairs):
+        if len(mass):
+            points[level] = offset[-1], mass[np.searchsorted(-offset, -offset[-1])]
+    return points
 
 
 def _least(stair: tuple[Int64, Int64], mass: Int64, side: Literal["left", "right"]) -> Int64:
