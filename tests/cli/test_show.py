@@ -88,3 +88,18 @@ def test_a_folder_of_ones_own_is_laid_over(tuner: Tuner) -> None:
     core = '[core."my dye"]\ntitle = "my dye"\nsmiles = "Oc1c([*:2])cccc1"\nseries = "phenol"\n'
     Path("mine/cores.toml").write_text(core, encoding="utf-8")
     assert "my dye" in tuner("show", "cores", "--overlay", "mine").out
+
+
+def test_reactions_are_listed_and_told_with_their_source(tuner: Tuner) -> None:
+    assert " reactions" in tuner("show", "reactions").out.splitlines()[0]
+    seen = tuner("show", "reactions", "azo-coupling")
+    for part in ("nitrosating", "4-arylazophenol", "never isolate", "Vogel"):
+        assert part in seen.out
+    assert "nitration" in tuner("show", "reactions", "nitraton").fault
+
+
+def test_a_reaction_of_ones_own_is_shown(tuner: Tuner) -> None:
+    Path("mine").mkdir()
+    rule = '[reaction."my step"]\ntitle = "mine"\nkind = "exchange"\ngives = { "CN" = "" }\nsource = "Vogel1989"\n'
+    Path("mine/reactions.toml").write_text(rule, encoding="utf-8")
+    assert "my step" in tuner("show", "reactions", "--overlay", "mine").out

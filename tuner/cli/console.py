@@ -5,6 +5,7 @@ from __future__ import annotations
 import sys
 from collections.abc import Iterable, Iterator, Sequence
 from contextlib import contextmanager
+from textwrap import fill
 
 from rich import box
 from rich.console import Console
@@ -90,6 +91,24 @@ def say(text: str, *, quiet: bool = False) -> None:
     """One line of result on standard output, never wrapped."""
     if not quiet:
         print(text)
+
+
+def facts(title: str, facts: list[tuple[str, str]]) -> None:
+    """One entry, fact by fact; empty ones are left out."""
+    say(title)
+    width = max(len(subject) for subject, _ in facts)
+    for subject, text in facts:
+        if text:
+            head = f"  {subject.ljust(width)}  "
+            say(
+                fill(
+                    text,
+                    WIDEST,
+                    initial_indent=head,
+                    subsequent_indent=" " * len(head),
+                    break_long_words=False,
+                )
+            )
 
 
 def note(lines: Iterable[str]) -> None:

@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from pathlib import Path
-from textwrap import fill
 
-from tuner.cli.console import WIDEST, say, show, table
+from tuner.cli.console import facts, say, show, table
+from tuner.cli.show_reactions import all_reactions, one_reaction
 from tuner.errors import TunerError
 from tuner.library import Library, load_library
 from tuner.library.checks import nearest
@@ -38,13 +38,13 @@ def run(kind: str, name: str, overlay: Path | None, svg: Path | None) -> None:
         "series": _series,
         "cores": _cores,
         "stock": _stock,
-        "reactions": _reactions,
+        "reactions": all_reactions,
     }
     single: dict[str, Callable[[Library, str], None]] = {
         "substituents": _one_substituent,
         "series": _one_series,
         "stock": _one_item,
-        "reactions": _one_reaction,
+        "reactions": one_reaction,
     }
     if name:
         single[kind](library, name)
@@ -58,24 +58,6 @@ def _number(value: Value, decimals: int = 2) -> str:
         return MISSING
     spread = f" ± {value.sd:.{decimals}f}" if value.sd == value.sd else ""
     return signed(value.value, decimals) + spread
-
-
-def _facts(title: str, facts: list[tuple[str, str]]) -> None:
-    """One entry, fact by fact; empty ones are left out."""
-    say(title)
-    width = max(len(subject) for subject, _ in facts)
-    for subject, text in facts:
-        if text:
-            head = f"  {subject.ljust(width)}  "
-            say(
-                fill(
-                    text,
-                    WIDEST,
-                    initial_indent=head,
-                    subsequent_indent=" " * len(head),
-                    break_long_words=False,
-                )
-            )
 
 
 def _substituents(library: Library) -> None:
@@ -112,7 +94,7 @@ def _plain(value: Value) -> str:
 def _one_substituent(library: Library, name: str) -> None:
     g = library.find_substituent(name)
     yes = {True: "yes", False: "no"}
-    _facts(
+    facts(
         f"{g.name} ({g.short})",
         [
             ("structure", g.smiles),
@@ -165,7 +147,7 @@ def _enthalpy(series: Series) -> str:
 
 def _one_series(library: Library, name: str) -> None:
     s = library.find_series(name)
-    _facts(
+    facts(
         f"{s.title} ({s.name})",
         [
             ("pKa of parent", f"{_number(s.parent_pka).lstrip('+')} (25 °C, water, zero ionic strength)"),
@@ -202,7 +184,7 @@ def _one_core(core: Core, library: Library, svg: Path | None) -> None:
     from tuner.structure.depict import draw_core
 
     prepared = prepare_core(core)
-    _facts(
+    facts(
         f"{core.title} ({core.name})",
         [
             ("structure", core.smiles),
@@ -272,7 +254,7 @@ def _one_item(library: Library, name: str) -> None:
         )
     for shelf, item in found:
         price = f"{item.price_per_mol:g} per mol" if item.price_per_mol == item.price_per_mol else ""
-        _facts(
+        facts(
             f"{item.name} (shelf {shelf})",
             [
                 ("structure", item.smiles),
@@ -282,11 +264,3 @@ def _one_item(library: Library, name: str) -> None:
                 ("note", item.note),
             ],
         )
-
-
-def _reactions(library: Library) -> None:
-    raise TunerError("reactions cannot be shown yet")
-
-
-def _one_reaction(library: Library, name: str) -> None:
-    raise TunerError("reactions cannot be shown yet")
