@@ -10,7 +10,7 @@ from __future__ import annotations
 from collections.abc import Iterable
 from dataclasses import replace
 from functools import lru_cache
-from math import hypot, nan
+from math import hypot, nan, sqrt
 
 from tuner.acidity.medium import medium_notes, require_valid
 from tuner.acidity.microstates import MOST_SITES, Microstates
@@ -20,7 +20,7 @@ from tuner.library.catalogue import Library
 from tuner.library.records import MeasuredPka
 from tuner.prediction.estimate import Estimator, effect_of
 from tuner.prediction.held import AZO_PROTONATION, AZO_PROTONATION_RHO, HELD_PAIRS, NOT_MODELLED
-from tuner.prediction.ionisation import Ionisation
+from tuner.prediction.ionisation import ALWAYS_IONISED, Ionisation
 from tuner.prediction.records import Prediction
 from tuner.prediction.ring_model import RingModel
 from tuner.prediction.sites import REPORTING_KINDS, SiteMaker, SiteTable
@@ -160,7 +160,8 @@ class MoleculeDoor:
         notes += [shared] if shared else []
         charged = ionisation.charged_near(0, states, pka)
         around = table.evaluate[0](charged)
-        sd = hypot(around.sd, table.ions[0].effect.sd, ionisation.coupling_sd(0))
+        moved = sqrt(max(0.0, table.ions[0].sd ** 2 - table.shown[0].sd ** 2))  # doubt of what was put on top
+        sd = hypot(around.sd, moved, table.ions[0].effect.sd, ionisation.coupling_sd(0))
         near = [s for k, s in enumerate(table.ions) if k and abs(s.pka - pka) < CLOSE_PKA and s.own is None]
         if near:
             kinds = sorted({s.kind.replace("_", " ") for s in near})
@@ -169,7 +170,7 @@ class MoleculeDoor:
         notes += _range_notes(pka)
         intercept, slope = table.ions[0].effect.temperature_line(ionisation.charge_around(0, states, pka))
         inside = [(p, s, k) for p, s, k in macroscopic if SCALE_PH[0] <= p <= SCALE_PH[1]]
-        doubt = max((s for _, s, _ in inside), default=0.0)
+        doubt = max((s for _, s, k in inside if k not in ALWAYS_IONISED), default=0.0)
         if doubt > MACROSCOPIC_SD_LIMIT:
             notes.append(f"constants of the whole molecule are too unsure to be given (+-{doubt:.1f})")
             inside = []

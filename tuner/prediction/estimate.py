@@ -129,7 +129,8 @@ class Estimator:
         return self._estimate(canonical_group(smiles)).effect.field
 
     def relative_field(self, smiles: str) -> float:
-        """Field effect of the tabulated relative that a group's estimate is built on; its own where there is
+        """Field effect (dimensionless) of the tabulated relative that a group's estimate is built on; its
+        own where there is
         none.
         """
         made = self._estimate(canonical_group(smiles))

@@ -177,7 +177,7 @@ class Ionisation:
 
     @property
     def pair_energies(self) -> Mapping[tuple[int, int], float]:
-        """Energies that were fixed beforehand."""
+        """Energies that were fixed beforehand, pKa units."""
         return self._energies
 
     def charged_near(self, k: int, states: Microstates, ph: float) -> frozenset[int]:
