@@ -1,4 +1,4 @@
-"""Found: a group whose open valence the toolkit writes in brackets (beside germanium, tin ...) gave broken molecules.
+"""Found: a group whose open valence the toolkit writes in brackets gave broken molecules.
 
 The text of the branch was cut after one character, which left `*]` behind.
 """

@@ -83,7 +83,7 @@ class AcidityConstants:
         return found
 
     def value(self, name: str) -> float:
-        """Value of one parameter, 0 where it is not in the fit."""
+        """Value of one parameter (pKa units per unit of its feature), 0 where it is not in the fit."""
         place = _places(self.names).get(name)
         return float(self.mean[place]) if place is not None else self.couplings.get(name, 0.0)
 

@@ -111,7 +111,7 @@ class GroupScales:
         return usual * sqrt(self.kin_share)
 
     def holds(self, name: str, published: float) -> bool:
-        """Whether the fit has this very constant (a user's row may have changed what it was fitted on)."""
+        """Whether the fit has this very constant: a user's row may state another sigma."""
         return name in self.published and abs(self.published[name] - published) < SAME_CONSTANT
 
 

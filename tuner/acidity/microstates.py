@@ -111,7 +111,7 @@ class Microstates:
         return np.asarray(self.protonated[int(np.argmax(shares))])
 
     def site_losses(self, step: int) -> FloatArray:
-        """How much of its proton each site loses in macroscopic step `step` (0 = most acidic), shape (n,),
+        """Which share of its proton each site loses in macroscopic step `step` (0 = most acidic), shape (n,),
         sum 1.
         """
         count = self.protonated.sum(axis=1)

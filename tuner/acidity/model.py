@@ -1,4 +1,4 @@
-"""One face for the whole acidity model: any prepared core, one pattern or a whole space.
+"""What is the pKa of one pattern, or of a whole space of patterns, on any prepared core?
 
 Lone benzene rings ("phenol", "aniline") start from the fitted parent; what the core carries itself counts as groups,
 and the core's own measured parent shifts the sum. Every other scaffold starts from its own measured parent and borrows

@@ -34,7 +34,7 @@ class PairwiseSum:
     pair: Mapping[Pair, FloatArray]
 
     def at(self, index: IntArray) -> FloatArray:
-        """Values for the analogs in `index`, shape (n_analogs, n_positions) -> (n_analogs,)."""
+        """Values (unit of the tables) of analogs: shape (n_analogs, n_positions) -> (n_analogs,)."""
         total = np.full(index.shape[0], self.base)
         for p, table in enumerate(self.unary):
             total += table[index[:, p]]
@@ -43,7 +43,9 @@ class PairwiseSum:
         return total
 
     def grid(self, axes: tuple[IntArray, ...]) -> FloatArray:
-        """Values over the product of `axes` (one choice-index array per position), shape (len(axes[0]), ...)."""
+        """Values (unit of the tables) over the product of `axes`, one array of choices per position;
+        shape (len(axes[0]), ...).
+        """
         n = len(axes)
         total = np.full(tuple(len(a) for a in axes), self.base)
         for p, table in enumerate(self.unary):

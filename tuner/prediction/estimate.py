@@ -130,8 +130,7 @@ class Estimator:
 
     def relative_field(self, smiles: str) -> float:
         """Field effect (dimensionless) of the tabulated relative that a group's estimate is built on; its
-        own where there is
-        none.
+        own where there is none.
         """
         made = self._estimate(canonical_group(smiles))
         relative = self._library.find_by_smiles(made.relative) if made.relative else None

@@ -35,7 +35,7 @@ def pka_text(value: float, sd: float) -> str:
 
 
 def signed(value: float, decimals: int = 2) -> str:
-    """A difference with its sign, and no sign for zero.
+    """A difference, in any unit, with its sign, and no sign for zero.
 
     >>> signed(0.213), signed(-0.2), signed(-0.001)
     ('+0.21', '−0.20', '0.00')

@@ -33,7 +33,7 @@ class Scale:
         return self.start + (value - self.low) / span * (self.end - self.start) if span else self.start
 
     def holds(self, value: float) -> bool:
-        """Whether the value lies on the axis."""
+        """Whether the value, in the unit of the axis, lies on it."""
         return self.low <= value <= self.high
 
 
@@ -63,7 +63,7 @@ def element(name: str, content: str = "", **attributes: object) -> str:
 
 
 def text(words: str, x: float, y: float, class_: str = "", anchor: str = "start", **more: object) -> str:
-    """A line of text, escaped."""
+    """A line of text at (x, y) [pixels], escaped."""
     return element("text", escape(words), x=x, y=y, class_=class_, text_anchor=anchor, **more)
 
 
@@ -73,7 +73,7 @@ def hover(words: str) -> str:
 
 
 def picture(content: str, width: float, height: float, label: str, class_: str) -> str:
-    """The whole picture, scalable, with words for those who cannot see it."""
+    """The whole picture of width x height [pixels], scalable, with words for those who cannot see it."""
     return (
         f'<svg xmlns="http://www.w3.org/2000/svg" class={quoteattr(class_)} '
         f'viewBox="0 0 {width:.0f} {height:.0f}" role="img" aria-label={quoteattr(label)}>{content}</svg>'

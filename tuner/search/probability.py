@@ -31,7 +31,7 @@ class Interval:
 
 
 def normal_share(below: FloatArray, above: FloatArray) -> FloatArray:
-    """P(below <= z <= above) of a standard normal z; 0 where the interval is empty. Arrays broadcast."""
+    """Probability that below <= z <= above, z standard normal; 0 where empty. Arrays broadcast."""
     from scipy.special import ndtr
 
     return np.asarray(np.maximum(ndtr(above) - ndtr(below), 0.0), dtype=np.float64)
@@ -88,7 +88,7 @@ def hit_bound(offset: FloatArray, tolerance: float, sd_low: FloatArray, sd_high:
     --------
     >>> import numpy as np
     >>> hit_bound(np.array([0.0, 0.5]), 0.2, np.array([0.1]), np.array([0.6])).round(3).tolist()
-    [0.954, 0.204]
+    [0.954, 0.194]
     """
     offset = np.asarray(offset, dtype=np.float64)
     near, far = offset - tolerance, offset + tolerance

@@ -71,7 +71,7 @@ def knee(offset: FloatArray, steps: FloatArray, mass: FloatArray, tolerance: flo
 
 
 def composition(groups: Sequence[Sequence[str]]) -> FloatArray:
-    """How often each word occurs in each list: shape (n_lists, n_words), words in sorted order.
+    """Count of each word in each list: shape (n_lists, n_words), words in sorted order.
 
     Examples
     --------
