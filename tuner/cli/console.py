@@ -93,11 +93,11 @@ def say(text: str, *, quiet: bool = False) -> None:
         print(text)
 
 
-def facts(title: str, facts: list[tuple[str, str]]) -> None:
+def facts(title: str, pairs: list[tuple[str, str]]) -> None:
     """One entry, fact by fact; empty ones are left out."""
     say(title)
-    width = max(len(subject) for subject, _ in facts)
-    for subject, text in facts:
+    width = max(len(subject) for subject, _ in pairs)
+    for subject, text in pairs:
         if text:
             head = f"  {subject.ljust(width)}  "
             say(

@@ -96,7 +96,7 @@ def candidate_table(result: DesignResult) -> Table:
     ]
     shown = result.candidates[:ROWS_SHOWN]
     more = len(result.candidates) - len(shown)
-    caption = "front: nothing is closer, shorter and lighter at once; cautions: how many"
+    caption = "front: nothing is closer, shorter and lighter at once; cautions: number"
     caption = f"{more} more rows in the files; {caption}" if more else caption
     return table("", headings, [_row(c, several) for c in shown], caption)
 
