@@ -58,6 +58,10 @@ def test_rule_applies(smiles: str, rule: str) -> None:
         ("Oc1ccc(C(F)F)cc1", "perfluoroalkyl"),
         ("Nc1ccc(S(=O)(=O)O)cc1", "small aromatic amine"),
         ("Oc1cccc(O)c1", "hydroquinone"),  # resorcinol gives no quinone
+        ("Nc1ccc([N+](=O)[O-])cc1", "1,4-phenylenediamine"),  # a nitro nitrogen is no amino nitrogen
+        ("O=[N+]([O-])c1ccc(N=Nc2ccccc2)cc1", "aminoazobenzene"),
+        # phenol red is drawn as a sultone, which alkylates nothing
+        ("O=S1(=O)OC(c2ccc(O)cc2)(c2ccc(O)cc2)c2ccccc21", "sulfonate ester"),
     ],
 )
 def test_rule_does_not_apply(smiles: str, rule: str) -> None:
