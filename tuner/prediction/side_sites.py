@@ -36,10 +36,23 @@ ORTHO_FIELD = 2.4  # benzoic acids: fall per unit of field effect of an ortho gr
 ORTHO_BULK = 0.25  # fall for any ortho group that has a size, by twist out of the ring plane
 ORTHO_DONOR = 0.45  # fall for an ortho group that gives a hydrogen bond to the carboxylate
 ORTHO_ETHER = 0.75  # rise for an ortho ether, which takes the acid's hydrogen bond
+SULFONAMIDES = ("sulfonamide", "benzenesulfonamide")
+SULFONANILIDE_FALL, SULFONANILIDE_SD = 1.6, 0.5
+"""An aryl group on a sulfonamide's nitrogen (benzenesulfonanilide against benzenesulfonamide), as
+remembered.
+"""
+
 BOTH_ORTHO_HYDROXYL = 0.65  # further fall where two hydroxyls bind the carboxylate
 ORTHO_AMINO = 0.75  # rise for an ortho amino group, in place of the donor term
 """Set on 2-chloro-, 2-methyl-, 2-nitro-, 2-hydroxy- and 2-methoxybenzoic acid as remembered; common
 practice, no source.
+"""
+
+
+SULFONAMIDES = ("sulfonamide", "benzenesulfonamide")
+SULFONANILIDE_FALL, SULFONANILIDE_SD = 1.6, 0.5
+"""An aryl group on a sulfonamide's nitrogen (benzenesulfonanilide against benzenesulfonamide), as
+remembered.
 """
 
 
@@ -132,6 +145,8 @@ def side_pka(view: SiteView, site: SideSite, estimator: Estimator) -> tuple[floa
         else:
             fall = site.field_slope * chain_effect(group.smiles, estimator)
             doubt = 0.15 * abs(fall)
+            if view.kind in SULFONAMIDES and anatomy(group.smiles).ring and group.label.startswith("N"):
+                fall, doubt = SULFONANILIDE_FALL, SULFONANILIDE_SD
         pka -= fall
         sd = hypot(sd, doubt, 0.1 if estimated else 0.0)
     donors = [g for g in view.groups if RING_LABELS.get(g.label) == "ortho" and g.smiles == "*O"]

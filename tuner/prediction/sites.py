@@ -8,7 +8,7 @@ neighbours; every other site through its own rules.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from math import hypot, log10
 
 from tuner.acidity.medium import medium_effect
@@ -38,6 +38,8 @@ REPORTING_KINDS = ("phenol", "aniline")
 AMINE_SERIES = ("anilinium", "n_alkyl_anilinium", "nn_dialkyl_anilinium")
 STATISTICAL_TWO = log10(2.0)
 SAME_CENTRE_BONDS = 2
+OPENED_SD = 0.5
+"""Further standard error (pKa units) of a ring that was opened into two groups."""
 
 Charges = Mapping[int, int]
 """Atom number -> formal charge that it carries when its site is ionised."""
@@ -50,6 +52,21 @@ class Evaluated:
     pka: float
     sd: float
     terms: tuple[Term, ...]
+
+
+def _opened(view: SiteView) -> frozenset[str]:
+    """Labels of groups that are two ends of one fused ring: they share atoms."""
+    found = set()
+    for i, one in enumerate(view.groups):
+        for other in view.groups[i + 1 :]:
+            if set(one.atoms) & set(other.atoms):
+                found |= {one.label, other.label}
+    return frozenset(found)
+
+
+def lies_flat(group: Substituent) -> Substituent:
+    """A group that a fused ring holds in the plane: it neither turns nor turns its neighbour."""
+    return replace(group, bulk=0, twistable=False)
 
 
 @dataclass
@@ -130,6 +147,7 @@ class SiteMaker:
         prepared = self._index.core(view.core)
         notes: list[str] = []
         neutral = self.resolve({g.label: g.smiles for g in view.groups}, notes)
+        opened = _opened(view)
         atoms = [v.reporting_atom for v in kept]
         inside = {a for a, label in view.other_sites if label}
 
@@ -139,7 +157,9 @@ class SiteMaker:
                 groups = neutral
             else:
                 groups = self.resolve(charged_groups(found.smiles, view.groups, acting), [])
-            return Evaluated(*self._model.evaluate(prepared, groups))
+            flat = {label: lies_flat(g) if label in opened else g for label, g in groups.items()}
+            pka, sd, terms = self._model.evaluate(prepared, flat)
+            return Evaluated(pka, hypot(sd, OPENED_SD) if opened else sd, terms)
 
         known: dict[frozenset[int], Evaluated] = {}
 
