@@ -97,6 +97,8 @@ def candidate_table(result: DesignResult) -> Table:
     shown = result.candidates[:ROWS_SHOWN]
     more = len(result.candidates) - len(shown)
     caption = "front: nothing is closer, shorter and lighter at once; cautions: number"
+    if any(isfinite(c.measured_pka) for c in shown):
+        caption += "; m: has been measured, and is ranked by that value"
     caption = f"{more} more rows in the files; {caption}" if more else caption
     return table("", headings, [_row(c, several) for c in shown], caption)
 
