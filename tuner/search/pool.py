@@ -83,7 +83,7 @@ def _not_filled(finalists: Sequence[Finalist], rows: int) -> str:
     """The note of a list that could not be filled or proven."""
     if len(finalists) < rows:
         return (
-            f"only {len(finalists)} of the {MOST_POOLED:,} best analogs pass the limits that need the molecule "
+            f"only {len(finalists)} of the {MOST_POOLED:,} best analogs pass the limits on molecules "
             f"({rows} were asked for)"
         )
     return f"flags and the user's own objective were weighed for the {MOST_POOLED:,} best analogs only"

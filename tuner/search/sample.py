@@ -1,5 +1,5 @@
-"""A seeded sample of a space: the backdrop of the trade-off picture, and what limits remove where nothing
-is left.
+"""What does a space look like in a seeded sample: the backdrop of the trade-off picture, and what limits
+remove where nothing is left?
 """
 
 from __future__ import annotations
