@@ -40,14 +40,8 @@ def test_an_incomplete_installation_says_so(package: Path) -> None:
 
 def test_every_shipped_data_file_counts_in_the_version(tmp_path: Path) -> None:
     names = {path.name for path in folders.data_files(folders.data_folder())}
-    shipped_names = {"substituents.csv", "reactions.toml", "example_shelf.csv", "constants.csv", "hazards.toml"}
-    assert shipped_names <= names
-        "substituents.csv",
-        "reactions.toml",
-        "example_shelf.csv",
-        "constants.csv",
-        "hazards.toml",
-    } <= names
+    wanted = {"substituents.csv", "reactions.toml", "example_shelf.csv", "constants.csv", "hazards.toml"}
+    assert wanted <= names
     shipped = tmp_path / "data"
     (shipped / "deep").mkdir(parents=True)
     (shipped / "deep" / "a.csv").write_text("x\n")
