@@ -8,7 +8,7 @@ import pytest
 
 from tuner.errors import TunerError
 from tuner.library import load_library
-from tuner.structure.own_library import load_checked_library
+from tuner.structure.own_library import load_checked_library, read_checked_measured
 
 
 def own(tmp_path: Path, **files: str) -> Path:
@@ -57,3 +57,26 @@ def test_unsound_structures_are_named_by_place(tmp_path: Path, name: str, text: 
         load_checked_library(own(tmp_path, **{name: text}))
     assert said in caught.value.text
     assert "\n" not in caught.value.text
+
+
+def test_users_measured_values_are_read_and_held_apart(tmp_path: Path) -> None:
+    path = tmp_path / "mine.csv"
+    path.write_text("smiles,pka\nOc1ccccc1,9.9\nCc1ccc(O)cc1,10.2\n")
+    assert [value.pka for value in read_checked_measured(path)] == [9.9, 10.2]
+
+
+@pytest.mark.parametrize(
+    ("row", "said"),
+    [
+        ("c1ccc(O)cc1,9.8", 'row 3: "c1ccc(O)cc1" is the same compound as "Oc1ccccc1"'),
+        ("[Na+].[O-]c1ccccc1,9.8", "is the same compound"),
+        ("Oc1ccccc,9.8", "row 3, column smiles"),
+        ("Oc1ccccc1.Cc1ccccc1,9.8", "row 3, column smiles"),
+    ],
+)
+def test_unsound_measured_values(tmp_path: Path, row: str, said: str) -> None:
+    path = tmp_path / "mine.csv"
+    path.write_text(f"smiles,pka\nOc1ccccc1,9.9\n{row}\n")
+    with pytest.raises(TunerError) as caught:
+        read_checked_measured(path)
+    assert said in caught.value.text

@@ -62,7 +62,7 @@ def _read_once(shipped: Path, overlay: Path | None, stamps: tuple[Stamp, Stamp])
     top = _read_folder(overlay, own=True) if overlay is not None else _Tables({}, {}, {}, {}, {})
     joined = base.under(top)
     _check_references(joined)
-    _check_unique_groups(joined.substituents)
+    _check_unique_groups(joined)
     return Library(
         substituents=joined.substituents,
         series=joined.series,
@@ -177,15 +177,15 @@ def _need(word: str, known: Mapping[str, object], kind: str, place: str) -> None
         raise LibraryError(f'there is no {kind} "{word}"', place=place, remedy=nearest(word, known))
 
 
-def _check_unique_groups(groups: Mapping[str, Substituent]) -> None:
+def _check_unique_groups(tables: _Tables) -> None:
     """No two groups may share a name or a structure, also after the user's rows are laid over."""
     seen: dict[tuple[str, str], str] = {}
-    for short, group in groups.items():
+    for short, group in tables.substituents.items():
         for what, word in (("name", group.name), ("smiles", group.smiles)):
             first = seen.setdefault((what, word), short)
             if first != short:
                 raise LibraryError(
                     f'groups "{first}" and "{short}" have the same {what} {word}',
-                    place=SUBSTITUENTS_FILE,
+                    place=tables.place("substituents", short),
                     remedy="to replace a shipped group, give the row its short name",
                 )

@@ -13,6 +13,9 @@ from pathlib import Path
 
 from tuner.errors import LibraryError, TunerError
 from tuner.library import Library, load_library
+from tuner.library.load import OWN_SOURCE
+from tuner.library.read_acidity import read_measured
+from tuner.library.records import MeasuredPka
 from tuner.structure.cores import prepare_core
 from tuner.structure.groups import canonical_group
 from tuner.structure.molecule import identity_key, read_smarts
@@ -54,6 +57,27 @@ def _checked(overlay: Path | None, version: str) -> Library:
         if value not in known:
             identity_key(value.smiles, place=f"{library.places['measured', value.smiles]}, column smiles")
     return library.with_substituents(groups)
+
+
+def read_checked_measured(path: Path) -> tuple[MeasuredPka, ...]:
+    """A user's file of measured pKa's (see `library.read_own_measured`), every structure read.
+
+    Raises
+    ------
+    TunerError
+        As `read_own_measured`; a structure that cannot be treated; a compound that stands twice, however it is
+        spelled: two measurements of one compound are to be averaged by whoever made them.
+    """
+    places: dict[tuple[str, str], str] = {}
+    values = read_measured(path, OWN_SOURCE, places)
+    seen: dict[str, str] = {}
+    for smiles in values:
+        place = places["measured", smiles]
+        first = seen.setdefault(identity_key(smiles, place=f"{place}, column smiles"), smiles)
+        if first != smiles:
+            remedy = "keep one row, with the mean"
+            raise LibraryError(f'"{smiles}" is the same compound as "{first}"', place=place, remedy=remedy)
+    return tuple(values.values())
 
 
 def _check_core(reporting_smarts: str, place: str) -> None:
