@@ -19,7 +19,7 @@ from tuner.library import Library
 from tuner.library.records import HYDROGEN_SHORT, Series
 from tuner.prediction.records import Prediction
 from tuner.screening.records import Flags
-from tuner.screening.screen import screen
+from tuner.screening.screen import require_known_flags, screen
 from tuner.search.build import build_space
 from tuner.search.palette import COMPETING_SD, competes, near_target, own_pka
 from tuner.search.shelf import Shelf
@@ -40,6 +40,7 @@ class Rooms:
     def __init__(self, brief: Brief, library: Library) -> None:
         for target in (brief.target, *brief.also):
             require_valid(target.medium, "key medium")
+        require_known_flags([name for name, _ in brief.limits.flags], library)
         self.brief = brief
         self.library = library
         self._tables: dict[int, CoreTables] = {}
@@ -140,12 +141,12 @@ class Rooms:
 
     def predict(self, smiles: str, medium: Medium) -> Prediction:
         """One molecule in one medium, the user's own measured values known."""
-        from tuner.library import read_own_measured
         from tuner.prediction.door import MoleculeDoor
+        from tuner.structure.own_library import read_checked_measured
 
         door = self._doors.get(medium)
         if door is None:
-            own = read_own_measured(self.brief.measured) if self.brief.measured is not None else ()
+            own = read_checked_measured(self.brief.measured) if self.brief.measured is not None else ()
             door = self._doors[medium] = self._door(MoleculeDoor, medium, own)
         return door.predict(smiles)  # type: ignore[attr-defined,no-any-return]
 

@@ -65,8 +65,8 @@ def read_checked_measured(path: Path) -> tuple[MeasuredPka, ...]:
     Raises
     ------
     TunerError
-        As `read_own_measured`; a structure that cannot be treated; a compound that stands twice, however it is
-        spelled: two measurements of one compound are to be averaged by whoever made them.
+        As `read_own_measured`; a structure that cannot be treated; a compound that stands twice, however
+        it is spelled: two measurements of one compound are to be averaged by whoever made them.
     """
     places: dict[tuple[str, str], str] = {}
     values = read_measured(path, OWN_SOURCE, places)
