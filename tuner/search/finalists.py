@@ -20,6 +20,7 @@ from tuner.errors import BriefError
 from tuner.prediction.records import Prediction
 from tuner.screening.records import Flags
 from tuner.search.molecules import has_anchor, smiles_of
+from tuner.search.palette import EXCLUDE
 from tuner.search.probability import Interval, hit_probability
 from tuner.search.result import OtherTarget
 from tuner.search.rooms import Rooms
@@ -29,7 +30,7 @@ from tuner.search.targets import SWITCHES, probability, window
 from tuner.search.user_objective import UserObjective
 from tuner.structure.molecule import Properties, properties
 
-EXCLUDE, PENALISE = "exclude", "penalise"
+PENALISE = "penalise"
 MEASURED_SD = 0.03
 """Least standard error of a measured value (pKa units): no laboratory repeats another's better; as FIELD
 data scatter.

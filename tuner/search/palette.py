@@ -7,7 +7,11 @@ from collections.abc import Iterable
 from tuner.brief.records import Brief
 from tuner.library import Library
 from tuner.library.records import HYDROGEN_SHORT, Substituent
+from tuner.screening.groups import flags_of_group
 from tuner.structure.molecule import has_match
+
+EXCLUDE = "exclude"
+"""What a brief says of a flag that no listed analog may raise."""
 
 FAMILY_WORD = "family:"
 SMARTS_WORD = "smarts:"
@@ -56,9 +60,10 @@ def is_free_form(group: Substituent, library: Library) -> bool:
 
 def palette(brief: Brief, library: Library) -> tuple[Substituent, ...]:
     """The groups that the brief allows, hydrogen first, then in the order of the table; handles of an
-    anchor excluded.
+    anchor excluded, and groups that bring along a flag which the brief excludes.
     """
     groups = brief.groups
+    barred = {flag for flag, action in brief.limits.flags if action == EXCLUDE}
     allowed = [
         group
         for group in library.substituents.values()
@@ -67,6 +72,7 @@ def palette(brief: Brief, library: Library) -> tuple[Substituent, ...]:
         and (not groups.allow or is_named(group, (*groups.allow, *groups.require)))
         and not is_named(group, groups.forbid)
         and group.short not in groups.anchors
+        and not (barred and barred.intersection(flags_of_group(group, library)))
     ]
     return (library.substituents[HYDROGEN_SHORT], *allowed)
 
