@@ -42,6 +42,7 @@ units).
 """
 OWN_STEP = 0.75  # a step in which the reporting site loses more than this share of its proton is its own
 GOOD_PART = 0.35
+SHARED_NOTE = "shares its proton with another group; the step in which it first ionises is given"
 
 
 Steps = tuple[tuple[float, float, str], ...]
@@ -208,10 +209,11 @@ class MoleculeDoor:
         part = [float(states.site_losses(k)[place]) for k in range(len(steps))]
         if max(part) > OWN_STEP:
             return states.transition_ph([place]), ""
-        first = next((k for k, share in enumerate(part) if share >= GOOD_PART), part.index(max(part)))
-        return steps[
-            first
-        ], "shares its proton with another group; the step in which it first takes part is given"
+        order = (
+            range(len(part)) if ionisation.sites[0].charge_if_ionised < 0 else range(len(part) - 1, -1, -1)
+        )
+        first = next((k for k in order if part[k] >= GOOD_PART), part.index(max(part)))
+        return steps[first], SHARED_NOTE
 
 
 def _known_values(measured: Iterable[MeasuredPka]) -> dict[str, MeasuredPka]:
