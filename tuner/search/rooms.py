@@ -8,6 +8,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import replace
 from functools import cached_property
+from typing import TYPE_CHECKING
 
 import numpy as np
 
@@ -15,12 +16,14 @@ from tuner.acidity.medium import MediumEffect, medium_effect, require_valid, to_
 from tuner.acidity.model import AcidityModel
 from tuner.acidity.tables import CoreTables, PairwiseSum
 from tuner.brief.records import Brief, Medium
+from tuner.errors import TunerError
 from tuner.library import Library
 from tuner.library.records import HYDROGEN_SHORT, Series
 from tuner.prediction.records import Prediction
 from tuner.screening.records import Flags
 from tuner.screening.screen import require_known_flags, screen
 from tuner.search.build import build_space
+from tuner.search.molecules import smiles_of
 from tuner.search.palette import COMPETING_SD, competes, near_target, own_pka
 from tuner.search.shelf import Shelf
 from tuner.search.space import Choice, CoreSpace, DesignSpace
@@ -28,6 +31,9 @@ from tuner.search.tables import FLAG_UNIT, MASS_UNIT, PKA_UNIT, Goal, SpaceTable
 from tuner.search.targets import condition
 from tuner.structure.molecule import molar_mass
 from tuner.synthesis.records import Route, StepTable
+
+if TYPE_CHECKING:
+    from tuner.prediction.door import MoleculeDoor
 
 HYDROGEN_GROUP = "*[H]"
 AMINE_SERIES = ("anilinium", "n_alkyl_anilinium", "nn_dialkyl_anilinium")
@@ -44,7 +50,7 @@ class Rooms:
         self.brief = brief
         self.library = library
         self._tables: dict[int, CoreTables] = {}
-        self._doors: dict[Medium, object] = {}
+        self._doors: dict[Medium, MoleculeDoor] = {}
 
     # ------------------------------------------------------------------ structure and choices
 
@@ -118,14 +124,29 @@ class Rooms:
         """Conditional pKa' and its variance over a space, in one medium."""
         pka25, variance, charge = self._plain(space)
         effect = self.effect(space, medium)
-        square = effect.scale**2
-        spread = PairwiseSum(
-            square * variance.base + effect.sd**2,
-            tuple(square * table for table in variance.unary),
-            {key: square * table for key, table in variance.pair.items()},
-        )
+        spread = replace(variance, base=variance.base + effect.sd**2)
+        pka = effect.on_tables(pka25, charge)
+        pka, spread = self._as_the_molecule_door(space, medium, pka, spread)
         intercept, slope = effect.temperature_line(charge.base)
-        return CoreTables(effect.on_tables(pka25, charge), spread, intercept, slope)
+        return CoreTables(pka, spread, intercept, slope)
+
+    def _as_the_molecule_door(
+        self, space: CoreSpace, medium: Medium, pka: PairwiseSum, variance: PairwiseSum
+    ) -> tuple[PairwiseSum, PairwiseSum]:
+        """Tables moved so that the first pattern (the bare core) has the molecule door's value.
+
+        The two differ only where the core itself has several ionising groups (the two hydroxyls of a
+        phthalein): the molecule door then sums over protonation states, the tables hold one of them.
+        """
+        if 0 in space.shape:
+            return pka, variance
+        first = np.zeros((1, len(space.shape)), dtype=np.int64)
+        door = self.predict(smiles_of(space, first[0]), medium)
+        if not door.found:
+            return pka, variance
+        shift = door.pka - float(pka.at(first)[0])
+        more = max(0.0, door.pka_sd**2 - float(variance.at(first)[0]))
+        return replace(pka, base=pka.base + shift), replace(variance, base=variance.base + more)
 
     def core_tables(self, rank: int) -> CoreTables:
         """The tables of one space in the target's medium."""
@@ -141,19 +162,22 @@ class Rooms:
 
     def predict(self, smiles: str, medium: Medium) -> Prediction:
         """One molecule in one medium, the user's own measured values known."""
+        door = self._doors.get(medium)
+        if door is None:
+            door = self._doors[medium] = self._open_door(medium)
+        try:
+            return door.predict(smiles)
+        except TunerError as fault:  # a molecule that the other room cannot treat stops no run
+            return Prediction(smiles, notes=(fault.text,))
+
+    def _open_door(self, medium: Medium) -> MoleculeDoor:
+        """The molecule door for one medium."""
+        from tuner.prediction.acidity_face import shipped_model
         from tuner.prediction.door import MoleculeDoor
         from tuner.structure.own_library import read_checked_measured
 
-        door = self._doors.get(medium)
-        if door is None:
-            own = read_checked_measured(self.brief.measured) if self.brief.measured is not None else ()
-            door = self._doors[medium] = self._door(MoleculeDoor, medium, own)
-        return door.predict(smiles)  # type: ignore[attr-defined,no-any-return]
-
-    def _door(self, kind: type, medium: Medium, own: Sequence[object]) -> object:
-        from tuner.prediction.acidity_face import shipped_model
-
-        return kind(self.library, shipped_model(self.library), medium, own)
+        own = read_checked_measured(self.brief.measured) if self.brief.measured is not None else ()
+        return MoleculeDoor(self.library, shipped_model(self.library), medium, own)
 
     def measured_in_medium(self, prediction: Prediction, rank: int) -> float:
         """A measured value brought to 25 degC, then to the target's medium as the prediction is (pKa
