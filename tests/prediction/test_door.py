@@ -173,3 +173,18 @@ def test_a_sulfonate_far_away_is_hardly_felt(door: MoleculeDoor) -> None:
     plain = door.predict("Nc1cccc2ccccc12").pka
     for smiles in ("Nc1cccc2c(S(=O)(=O)O)cccc12", "Nc1cccc2cc(S(=O)(=O)O)ccc12"):
         assert abs(door.predict(smiles).pka - plain) < 0.35
+
+
+def test_what_the_medium_adds_is_told_cause_by_cause(library: Library) -> None:
+    medium = Medium(
+        temperature_c=37.0, ionic_strength_m=0.15, offset=0.2, offset_sd=0.05, surface_potential_mv=-20.0
+    )
+    answer = MoleculeDoor(library, shipped_model(library), medium).predict("Nc1ccc(Cl)cc1")
+    assert [t.label for t in answer.medium_terms] == ["temperature", "ionic strength", "film", "surface"]
+    assert answer.pka25 + sum(t.value for t in answer.medium_terms) == pytest.approx(answer.pka, abs=1e-6)
+    for term in answer.medium_terms:
+        assert library.reference(term.source)
+
+
+def test_plain_water_at_25_degc_adds_nothing(door: MoleculeDoor) -> None:
+    assert door.predict("Oc1ccccc1").medium_terms == ()

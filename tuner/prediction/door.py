@@ -19,6 +19,7 @@ from tuner.errors import TunerError
 from tuner.library.catalogue import Library
 from tuner.library.records import MeasuredPka
 from tuner.prediction.estimate import Estimator, effect_of
+from tuner.prediction.explain import medium_terms
 from tuner.prediction.held import AZO_PROTONATION, AZO_PROTONATION_RHO, HELD_PAIRS, NOT_MODELLED
 from tuner.prediction.ionisation import ALWAYS_IONISED, Ionisation
 from tuner.prediction.records import Prediction
@@ -169,7 +170,8 @@ class MoleculeDoor:
             notes.append(f"half charged at the transition: {', '.join(kinds)}")
             sd = hypot(sd, CLOSE_SD)
         notes += _range_notes(pka)
-        intercept, slope = table.ions[0].effect.temperature_line(ionisation.charge_around(0, states, pka))
+        charge = ionisation.charge_around(0, states, pka)
+        intercept, slope = table.ions[0].effect.temperature_line(charge)
         inside = [(p, s, k) for p, s, k in macroscopic if SCALE_PH[0] <= p <= SCALE_PH[1]]
         doubt = max((s for _, s, k in inside if k not in ALWAYS_IONISED), default=0.0)
         if doubt > MACROSCOPIC_SD_LIMIT:
@@ -186,6 +188,7 @@ class MoleculeDoor:
             macroscopic_sds=tuple(s for _, s, _ in inside),
             macroscopic_kinds=tuple(k for _, _, k in inside),
             terms=around.terms or answer.terms,
+            medium_terms=medium_terms(table.series[0], self.medium, pka25, charge),
             notes=tuple(dict.fromkeys(notes)),
         )
 

@@ -56,6 +56,7 @@ class Prediction:
     macroscopic_kinds : kind of the site that mainly loses its proton in each step
     sites : every ionising site, the reporting one first
     terms : the reporting site's pKa25 as a sum
+    medium_terms : what the medium adds to it, cause by cause
     known : a measured value of this compound, if the library holds one
     notes : what was assumed, and why there is no number where there is none
     """
@@ -74,6 +75,7 @@ class Prediction:
     macroscopic_kinds: tuple[str, ...] = ()
     sites: tuple[SitePrediction, ...] = ()
     terms: tuple[Term, ...] = ()
+    medium_terms: tuple[Term, ...] = ()
     known: MeasuredPka | None = None
     notes: tuple[str, ...] = ()
 

@@ -78,6 +78,7 @@ class SiteTable:
     energies: dict[tuple[int, int], float]
     evaluate: dict[int, Callable[[frozenset[int]], Evaluated]]
     notes: list[str] = field(default_factory=list)
+    series: dict[int, Series] = field(default_factory=dict)  # of phenols and anilines
 
 
 class SiteMaker:
@@ -170,7 +171,8 @@ class SiteMaker:
             return known[key]
 
         base = cached(frozenset())
-        effect = medium_effect(self.series_of(view), medium)
+        made.series[number] = self.series_of(view)
+        effect = medium_effect(made.series[number], medium)
         made.evaluate[number] = cached
         made.ions.append(
             IonSite(
