@@ -5,7 +5,7 @@ from __future__ import annotations
 import pytest
 
 from tuner.library import load_library
-from tuner.screening.amines import released_amines
+from tuner.screening.amines import may_hold_azo, released_amines
 from tuner.screening.rules import RestrictedAmine, load_rules
 from tuner.structure.cleavage import cleave_azo
 
@@ -74,3 +74,23 @@ def test_well_known_dyes(dye: str, name: str) -> None:
 )
 def test_dyes_that_release_none(dye: str) -> None:
     assert released_amines(dye, RULES) == ()
+
+
+@pytest.mark.parametrize(
+    ("smiles", "azo"),
+    [
+        ("Oc1ccc(N=Nc2ccccc2)cc1", True),
+        ("Oc1ccc(/N=N/c2ccccc2)cc1", True),
+        ("O=C1C=Cc2ccccc2/C1=N/Nc1ccccc1C", True),
+        ("Cc1ccccc1N/N=C1/C(=O)C=Cc2ccccc21", True),
+        ("Oc1ccc(NN)cc1", False),
+        ("Oc1ccccc1", False),
+    ],
+)
+def test_a_look_at_the_text_misses_no_azo_bond(smiles: str, azo: bool) -> None:
+    assert may_hold_azo(smiles) is azo
+    assert azo or cleave_azo(smiles) == ()
+
+
+def test_a_salt_of_a_listed_amine_is_that_amine() -> None:
+    assert [amine.name for amine in released_amines("Cc1ccccc1[NH3+].[Cl-]", RULES)] == ["o-toluidine"]

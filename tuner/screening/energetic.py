@@ -18,12 +18,12 @@ from numpy.typing import NDArray
 from tuner.errors import LibraryError
 from tuner.library.catalogue import Library
 from tuner.library.records import Substituent
-from tuner.screening.match import applying
+from tuner.screening.match import applying, match_count
 from tuner.screening.records import GroupLimit
 from tuner.screening.rules import HAZARDS_FILE, OXYGEN_BALANCE, HazardRules, OxygenRule, Rule, load_rules
 from tuner.structure.assemble import branch_of
 from tuner.structure.molecule import atom_counts
-from tuner.structure.scan import atomic_mass, pattern_counts
+from tuner.structure.scan import atomic_mass
 
 NITRO_RULE = "polynitro"
 """Its patterns are also what the oxygen balance counts as nitro groups."""
@@ -67,7 +67,7 @@ def nitro_rule(rules: HazardRules) -> Rule:
 
 def nitro_count(smiles: str, rules: HazardRules) -> int:
     """Number of nitro and nitroso groups on carbon, as the rule `polynitro` counts them."""
-    return sum(pattern_counts(smiles, nitro_rule(rules).smarts))
+    return match_count(smiles, nitro_rule(rules), rules.rules)
 
 
 def too_rich_in_oxygen(smiles: str, nitro: int, rules: HazardRules) -> bool:
@@ -129,13 +129,22 @@ def energetic_weights(
     """
     rules = load_rules(library)
     bare = OPEN_POSITION.sub("[H]", core_smiles)
-    others = tuple(rule for rule in rules.withholding if rule.flag.rule != NITRO_RULE)
-    own_nitro = nitro_count(bare, rules)
-    groups = _weights(relations, choices, lambda smiles: int(bool(applying(smiles, others))))
-    nitro = _weights(relations, choices, lambda smiles: nitro_count(smiles, rules))
+    withholding, by_number = rules.withholding, nitro_rule(rules)
+
+    def forbidden(smiles: str) -> int:
+        """1 where another rule than the number of nitro groups withholds."""
+        return int(any(rule is not by_number for rule in applying(smiles, withholding)))
+
+    def nitro_groups(smiles: str) -> int:
+        """As `nitro_count`, with the same look at the structure that `forbidden` takes."""
+        return match_count(smiles, by_number, withholding)
+
+    groups = _weights(relations, choices, forbidden)
+    nitro = _weights(relations, choices, nitro_groups)
+    own_nitro = nitro_groups(bare)
     return (
-        GroupLimit("energetic groups", groups, 0, -1 if applying(bare, others) else 0),
-        GroupLimit("nitro groups", nitro, 0, nitro_rule(rules).at_least - 1 - own_nitro),
+        GroupLimit("energetic groups", groups, 0, -forbidden(bare)),
+        GroupLimit("nitro groups", nitro, 0, by_number.at_least - 1 - own_nitro),
         _oxygen_limit(bare, own_nitro, nitro, choices, rules.oxygen),
     )
 

@@ -20,6 +20,16 @@ def _layout(rules: tuple[Rule, ...]) -> tuple[tuple[str, ...], tuple[tuple[int, 
     return tuple(patterns), tuple(spans)
 
 
+def match_count(smiles: str, rule: Rule, rules: tuple[Rule, ...]) -> int:
+    """How often the patterns of one of these rules match a structure as written, `unless` left aside.
+
+    Asking for one rule out of the whole set costs nothing once `applying` has looked at the structure.
+    """
+    patterns, spans = _layout(rules)
+    start, middle, _ = spans[rules.index(rule)]
+    return sum(pattern_counts(smiles, patterns)[start:middle])
+
+
 def applying(smiles: str, rules: tuple[Rule, ...]) -> tuple[Rule, ...]:
     """The rules that apply to a structure as written, in the order given; the structure is read once.
 

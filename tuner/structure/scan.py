@@ -10,7 +10,7 @@ from tuner.errors import StructureError
 from tuner.structure.molecule import parse, read_smarts
 
 
-@lru_cache(maxsize=65536)
+@lru_cache(maxsize=16384)
 def pattern_counts(smiles: str, patterns: tuple[str, ...], *, place: str = "") -> tuple[int, ...]:
     """Number of different places (sets of atoms) at which each SMARTS pattern matches a structure as written.
 
