@@ -21,6 +21,11 @@ from tuner.search.tables import Goal, SpaceTables
 MOST_POOLED = 6000
 """Analogs that are looked at as molecules at most: about a quarter of a minute."""
 
+DOOR_SLACK = 0.02
+"""Scores of the look-up tables and of the molecule door may differ by this much before the pool is
+widened.
+"""
+
 DIVERSE_POOL = 8
 """A diverse list of n is chosen from n times as many."""
 
@@ -47,8 +52,9 @@ def gather(
 ) -> Pooled:
     """Search, look at the best as molecules, and widen the search until the list is full and proven.
 
-    The list is proven when its last row scores at least as high as anything that was not looked at could:
-    what is decided on the molecule (flags that are penalised) can only lower a score.
+    The list is proven when its last row scores at least as high as anything that was not looked at could by
+    the tables: what is decided on the molecule (penalised flags, further groups that ionise) lowers a
+    score.
     """
     rows = brief.ranking.rows
     wanted = rows * DIVERSE_POOL if brief.ranking.diverse else rows
@@ -74,9 +80,9 @@ def gather(
 
 def _proven(finalists: Sequence[Finalist], rows: int, found: Found) -> bool:
     """Whether nothing beyond the pool can score above the last row, as far as the tables go."""
-    last = min(finalists[:rows], key=lambda one: one.score) if finalists else None
+    last = min((one.score for one in finalists[:rows]), default=-np.inf)
     costly = any(one.other_costs > 0.0 for one in finalists[: 2 * rows])
-    return last is not None and (not costly or last.score >= found.certificate.bound)
+    return last >= found.certificate.bound - (0.0 if costly else DOOR_SLACK)
 
 
 def _not_filled(finalists: Sequence[Finalist], rows: int) -> str:
