@@ -343,6 +343,13 @@ def test_the_top_of_the_repository_is_tidy() -> None:
     assert {top for top in tops if not top.startswith(".")} <= allowed
 
 
+def test_the_guide_names_only_files_that_exist() -> None:
+    guide = (ROOT / "DEVELOPERS.md").read_text(encoding="utf-8")
+    known = {path.name for folder in (PACKAGE, ROOT / "tests") for path in folder.rglob("*.py")}
+    named = {Path(word).name for word in re.findall(r"[\w/]+\.py\b", guide)}
+    assert sorted(named - known) == []
+
+
 SPEAKING_NAMES = {"name", "smiles", "source", "note"}
 """Columns that mean the same in every table: usual name, structure, keys of sources.toml, remarks."""
 
