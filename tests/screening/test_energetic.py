@@ -63,6 +63,37 @@ def test_energetic(smiles: str) -> None:
     assert is_energetic(smiles, LIBRARY)
 
 
+# Compounds that any handbook lists as explosives, by their usual names: each must be caught.
+KNOWN = {
+    "TNT": f"Cc1c({NO2})cc({NO2})cc1{NO2}",
+    "tetryl": f"CN({NO2})c1c({NO2})cc({NO2})cc1{NO2}",
+    "TATB": f"Nc1c({NO2})c(N)c({NO2})c(N)c1{NO2}",
+    "styphnic acid": f"Oc1c({NO2})cc({NO2})c(O)c1{NO2}",
+    "ammonium picrate": f"[NH4+].[O-]c1c({NO2})cc({NO2})cc1{NO2}",
+    "hexanitrostilbene": f"C(=Cc1c({NO2})cc({NO2})cc1{NO2})c1c({NO2})cc({NO2})cc1{NO2}",
+    "dinol": f"O=C1C=C({NO2})C=C({NO2})C1=[N+]=[N-]",
+    "RDX": f"C1N({NO2})CN({NO2})CN1{NO2}",
+    "nitroguanidine": f"NC(=N)N{NO2}",
+    "PETN": f"C(CO{NO2})(CO{NO2})(CO{NO2})CO{NO2}",
+    "TATP": "CC1(C)OOC(C)(C)OOC(C)(C)OO1",
+    "HMTD": "C1OOCN2COOCN1COOC2",
+    "benzoyl peroxide": "O=C(OOC(=O)c1ccccc1)c1ccccc1",
+    "lead azide": "[N-]=[N+]=[N-].[N-]=[N+]=[N-].[Pb+2]",
+    "mercury fulminate": "[C-]#[N+][O-].[C-]#[N+][O-].[Hg+2]",
+    "silver acetylide": "[C-]#[C-].[Ag+].[Ag+]",
+    "benzenediazonium chloride": "N#[N+]c1ccccc1.[Cl-]",
+    "nitrogen triiodide": "IN(I)I",
+    "ethyl perchlorate": "CCOCl(=O)(=O)=O",
+    "benzotrifuroxan": "[O-][n+]1onc2c1c1c(no[n+]1[O-])c1c2no[n+]1[O-]",
+    "tetranitromethane": f"C({NO2})({NO2})({NO2}){NO2}",
+}
+
+
+@pytest.mark.parametrize("name", sorted(KNOWN))
+def test_known_explosives_are_withheld(name: str) -> None:
+    assert is_energetic(KNOWN[name], LIBRARY)
+
+
 @pytest.mark.parametrize(
     "smiles",
     [
@@ -128,3 +159,8 @@ def test_an_energetic_core_leaves_nothing() -> None:
     h = [LIBRARY.substituents["H"]]
     limits = energetic_weights("Oc1c([*:2])cc(N=[N+]=[N-])cc1", ["ortho"], [h], LIBRARY)
     assert any(int(limit.weights[0][0]) > limit.high for limit in limits)
+
+
+def test_no_shipped_core_is_withheld() -> None:
+    bare = {name: assemble(core, {}) for name, core in LIBRARY.cores.items()}
+    assert [name for name, smiles in bare.items() if is_energetic(smiles, LIBRARY)] == []
