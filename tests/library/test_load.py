@@ -174,3 +174,21 @@ def test_data_version_follows_contents_and_not_line_ends(folder: Path) -> None:
     assert data_version(folder) == before
     path.write_bytes(path.read_bytes().replace(b"9.99", b"9.98"))
     assert data_version(folder) != before
+
+
+def test_an_empty_folder_changes_nothing_but_is_remembered(folder: Path, tmp_path: Path) -> None:
+    own = tmp_path / "own"
+    own.mkdir()
+    plain, laid = read_library(folder), read_library(folder, own)
+    assert (laid.substituents, laid.series, laid.cores) == (plain.substituents, plain.series, plain.cores)
+    assert (laid.sources, laid.measured, laid.overlay) == (plain.sources, plain.measured, own)
+
+
+def test_a_library_is_not_changed_by_reading_another(folder: Path, tmp_path: Path) -> None:
+    plain = read_library(folder)
+    before = dict(plain.substituents)
+    own = tmp_path / "own"
+    own.mkdir()
+    (own / "substituents.csv").write_text("name,short,smiles,sigma_para\nnitro,NO2,*[N+](=O)[O-],0.9\n")
+    read_library(folder, own)
+    assert dict(plain.substituents) == before
