@@ -180,15 +180,18 @@ def test_an_empty_folder_changes_nothing_but_is_remembered(folder: Path, tmp_pat
     own = tmp_path / "own"
     own.mkdir()
     plain, laid = read_library(folder), read_library(folder, own)
-    assert (laid.substituents, laid.series, laid.cores) == (plain.substituents, plain.series, plain.cores)
+    # as text, since an unknown number is NaN, which equals nothing
+    assert repr((laid.substituents, laid.series, laid.cores)) == repr(
+        (plain.substituents, plain.series, plain.cores)
+    )
     assert (laid.sources, laid.measured, laid.overlay) == (plain.sources, plain.measured, own)
 
 
 def test_a_library_is_not_changed_by_reading_another(folder: Path, tmp_path: Path) -> None:
     plain = read_library(folder)
-    before = dict(plain.substituents)
+    before = repr(plain.substituents)
     own = tmp_path / "own"
     own.mkdir()
     (own / "substituents.csv").write_text("name,short,smiles,sigma_para\nnitro,NO2,*[N+](=O)[O-],0.9\n")
     read_library(folder, own)
-    assert dict(plain.substituents) == before
+    assert repr(plain.substituents) == before
