@@ -14,6 +14,9 @@ import numpy as np
 
 from tuner.acidity.tables import FloatArray
 
+FARTHEST_Z = 8.0
+"""Standard deviations beyond which a share is taken as 0 (it is below 1e-15)."""
+
 LEAST_SD = 0.02
 """pKa units; no calculated pKa is surer than this, whatever the algebra says (as in `acidity.pattern`)."""
 
@@ -34,7 +37,16 @@ def normal_share(below: FloatArray, above: FloatArray) -> FloatArray:
     """Probability that below <= z <= above, z standard normal; 0 where empty. Arrays broadcast."""
     from scipy.special import ndtr
 
-    return np.asarray(np.maximum(ndtr(above) - ndtr(below), 0.0), dtype=np.float64)
+    below, above = np.broadcast_arrays(below, above)
+    far = (below > FARTHEST_Z) | (above < -FARTHEST_Z)
+    if np.count_nonzero(far) * 2 <= far.size:
+        share = np.maximum(ndtr(above) - ndtr(below), 0.0)
+        return np.asarray(np.where(far, 0.0, share), dtype=np.float64)
+    # most analogs of a space are far from the window: the costly function is left to those that are near
+    share = np.zeros(far.shape)
+    near = ~far
+    share[near] = np.maximum(ndtr(above[near]) - ndtr(below[near]), 0.0)
+    return share
 
 
 def hit_probability(intervals: Sequence[Interval]) -> FloatArray:
@@ -59,13 +71,17 @@ def hit_probability(intervals: Sequence[Interval]) -> FloatArray:
     >>> hit_probability([one, other]).round(4).tolist()
     [0.4772]
     """
-    below: FloatArray | float = -np.inf
-    above: FloatArray | float = np.inf
-    for one in intervals:
-        sd = np.maximum(one.sd, LEAST_SD)
-        below = np.maximum(below, (one.low - one.pka) / sd)
-        above = np.minimum(above, (one.high - one.pka) / sd)
-    return normal_share(np.asarray(below), np.asarray(above))
+    below, above = _in_errors(intervals[0])
+    for one in intervals[1:]:
+        low, high = _in_errors(one)
+        below, above = np.maximum(below, low), np.minimum(above, high)
+    return normal_share(below, above)
+
+
+def _in_errors(one: Interval) -> tuple[FloatArray, FloatArray]:
+    """Both edges of an interval in standard errors from the prediction."""
+    per_sd = 1.0 / np.maximum(one.sd, LEAST_SD)
+    return (one.low - one.pka) * per_sd, (one.high - one.pka) * per_sd
 
 
 def hit_bound(offset: FloatArray, tolerance: float, sd_low: FloatArray, sd_high: FloatArray) -> FloatArray:
