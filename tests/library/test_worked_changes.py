@@ -11,7 +11,6 @@ from pathlib import Path
 import pytest
 
 from tuner.library import load_library
-from tuner.library.folders import data_folder
 from tuner.library.reactions import load_reactions
 from tuner.library.stock import read_shelf
 from tuner.prediction.door import predict_molecule
@@ -74,12 +73,12 @@ def test_a_shelf(own: Path) -> None:
 
 
 def test_a_reaction(own: Path) -> None:
-    shipped = (data_folder() / "reactions.toml").read_text(encoding="utf-8")
-    path = own / "reactions.toml"
-    path.write_text(shipped + printed("reactions.toml"), encoding="utf-8")
-    book = load_reactions(load_library().substituents, path)
+    (own / "reactions.toml").write_text(printed("reactions.toml"), encoding="utf-8")
+    groups = load_library().substituents
+    book = load_reactions(groups, overlay=own)
     dakin = next(rule for rule in book.reactions if rule.name == "Dakin oxidation")
     assert (dakin.takes, dict(dakin.gives)) == (("CHO",), {"OH": ""})
+    assert set(book.names) == {*load_reactions(groups).names, "Dakin oxidation"}
 
 
 def test_a_rule_of_caution(own: Path) -> None:
