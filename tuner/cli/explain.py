@@ -38,7 +38,9 @@ def run(smiles: str, temperature_c: float, ionic_strength_m: float, overlay: Pat
 
 def _sources(answer: Prediction, library: Library) -> list[str]:
     """Where the constants of the sum come from, each once, in full."""
-    keys = dict.fromkeys(key for term in answer.terms for key, _ in split_citation(term.source))
+    keys = dict.fromkeys(
+        key for term in (*answer.terms, *answer.medium_terms) for key, _ in split_citation(term.source)
+    )
     texts = [library.sources[key].text if key in library.sources else key for key in keys]
     head, rest = "  from  ", " " * 8
     return [fill(text, WIDEST, initial_indent=head, subsequent_indent=rest) for text in texts]
@@ -58,6 +60,7 @@ def _sum_table(answer: Prediction) -> Table:
     rows = [_term_row(n, term) for n, term in enumerate(answer.terms)]
     total = sum(term.value for term in answer.terms)
     rows.append(("", "sum: pKa at 25 °C, no salt", "", "", f"{total:.2f}", "", ""))
+    rows += [_term_row(1, term) for term in answer.medium_terms]
     return table("Thermodynamic pKa of the reporting group as a sum", headings, rows)
 
 
