@@ -35,8 +35,8 @@ REFIT = "rewrite the folder with: python -m tuner.fitting fit --reference FOLDER
 class Misfit:
     """What a new compound adds to the error of the parameters, standard deviations in pKa units.
 
-    `base` for any compound (laboratories differ by this much), `ortho` per ortho group, `nitrogen` where the reporting
-    nitrogen bears a group, `acceptors` times the product of the pulls of each pair of groups.
+    `base` for any compound (laboratories differ by this much), `ortho` per ortho group, `nitrogen` per group on the
+    reporting nitrogen, `acceptors` times the product of the pulls of each pair of groups.
     """
 
     base: float

@@ -42,6 +42,8 @@ COUPLINGS = (
     Coupling("acceptors_mm", "mm", "pull_meta", "pull_meta"),
     Coupling("acceptors_mp", "mp", "pull_meta", "pull_para"),
     Coupling("solvation", "oo", "hydrocarbon", "hydrocarbon"),
+    Coupling("crowding", "oo", "bulky", "bulky"),
+    Coupling("buttressing", "om", "bulky", "bulky", beside=True),
     Coupling("ortho_bulk_para_acceptor", "op", "hydrocarbon", "resonance_pull"),
     Coupling("ortho_large_para_acceptor", "op", "large_hydrocarbon", "resonance_pull"),
     Coupling("ortho_ether_para_acceptor", "op", "ether", "resonance_pull"),

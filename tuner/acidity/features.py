@@ -10,6 +10,7 @@ the variance.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from math import nan, sqrt
@@ -37,7 +38,7 @@ ORTHO_FEATURES = (
     "ortho_hbond_donor", "ortho_charge", "ortho_anion",
 )  # fmt: skip
 NITROGEN_FEATURES = (
-    "nitrogen_group", "nitrogen_field", "nitrogen_medium", "nitrogen_large", "nitrogen_aryl",
+    "nitrogen_group", "nitrogen_field", "nitrogen_unsaturated", "nitrogen_medium", "nitrogen_large", "nitrogen_aryl",
 )  # fmt: skip
 AMINE_FEATURES = tuple(
     f"{kind}_{what}"
@@ -50,6 +51,8 @@ SHARED_PARAMETERS = ("base", "rho", "para_donor", *ORTHO_FEATURES, *NITROGEN_FEA
 KIN_MARK = "~"
 """Names of what kin have in common carry it: `para:~ester`."""
 
+ALLYLIC = re.compile(r"\*C(C=C|C#C|C\(C\)=C|c)")
+SATURATED = re.compile(r"\*[C()0-9]+")
 SAME_CONSTANT = 1e-6
 CHARGE_SIGMA = 0.33
 """Part of sigma that is the charge itself, per unit charge."""
@@ -241,10 +244,18 @@ def _ortho(slot: Slot, group: Substituent, scales: GroupScales) -> Alone:
     return Alone(features, variance, nan, "ortho")
 
 
+def nitrogen_pull(group: Substituent) -> float:
+    """Field effect (dimensionless) of a group on the reporting nitrogen; 0 for saturated hydrocarbons,
+    whose tabulated one is noise.
+    """
+    return 0.0 if SATURATED.fullmatch(group.smiles) else max(field(group), 0.0)
+
+
 def _on_nitrogen(group: Substituent, scales: GroupScales) -> Alone:
     """A group on the reporting nitrogen."""
     features: Features = {"nitrogen_group": 1.0}
-    _add(features, "nitrogen_field", -field(group))
+    _add(features, "nitrogen_field", -nitrogen_pull(group))
+    _add(features, "nitrogen_unsaturated", float(bool(ALLYLIC.match(group.smiles))))
     _add(features, "nitrogen_medium", float(group.bulk == 2))
     _add(features, "nitrogen_large", float(group.bulk == len(SIZE) - 1))
     _add(features, "nitrogen_aryl", float(group.smiles.startswith("*c")))

@@ -28,7 +28,8 @@ LEAST_VARIANCE = 0.02**2
 COUPLING_WORDS = {
     "acceptors_oo": "two ortho acceptors", "acceptors_om": "ortho and meta acceptors",
     "acceptors_op": "ortho and para acceptors", "acceptors_mm": "two meta acceptors",
-    "acceptors_mp": "meta and para acceptors", "solvation": "hindered solvation between two ortho groups",
+    "acceptors_mp": "meta and para acceptors", "solvation": "two bulky ortho groups around the reporting group",
+    "crowding": "two ortho groups beside the reporting group", "buttressing": "neighbour presses on an ortho group",
     "ortho_bulk_para_acceptor": "bulky ortho group and para acceptor",
     "ortho_large_para_acceptor": "large ortho group and para acceptor",
     "ortho_ether_para_acceptor": "ortho ether and para acceptor",
@@ -118,7 +119,7 @@ def pair_effect(
 
 def fixed_misfit(constants: AcidityConstants, amine: int) -> float:
     """Variance that any compound has, pKa units squared."""
-    return constants.misfit.base**2 + (constants.misfit.nitrogen**2 if amine else 0.0)
+    return constants.misfit.base**2 + constants.misfit.nitrogen**2 * amine
 
 
 def group_misfit(constants: AcidityConstants, slot: Slot, group: Substituent) -> float:
@@ -251,7 +252,7 @@ def _pair_title(constants: AcidityConstants, parts: _Sum, i: int, j: int) -> str
     amine = min(sum(s.relation == "nitrogen" for s in parts.slots), AMINE_DIALKYL)
     tables = couple(parts.slots[i], [one], parts.slots[j], [two], amine)
     largest = max(tables, key=lambda p: abs(constants.couplings.get(p, 0.0) * float(tables[p][0, 0])))
-    return COUPLING_WORDS[largest]
+    return COUPLING_WORDS.get(largest, largest)
 
 
 def core_shift(

@@ -44,7 +44,7 @@ def make_fit(reference: Path | None, *, tune: bool) -> tuple[Fit, list[str]]:
     else:
         rows, left_out = reference_rows(library, reference)
         rows += step_rows(library, reference)
-    return fit([*rows, *remembered_rows(library)], tune=tune), left_out
+    return fit([*rows, *remembered_rows(library, rows)], tune=tune), left_out
 
 
 def print_check(made: Fit) -> None:

@@ -8,8 +8,9 @@ down as remembered (`remembered.csv` and the ortho columns of `substituents.csv`
 from __future__ import annotations
 
 import csv
-from collections.abc import Callable, Iterator, Mapping
+from collections.abc import Callable, Iterable, Iterator, Mapping
 from dataclasses import dataclass
+from math import inf
 from pathlib import Path
 
 from tuner.acidity.medium import to_25_c
@@ -38,6 +39,8 @@ SENSITIVITY = {"phenol": 2.23, "aniline": 2.88}
 
 MEASURED, STEP, REMEMBERED = "measured", "step", "remembered"
 MOST_DETERMINATIONS = 4
+CONTRADICTION = 3.0
+"""Stated doubts by which a remembered value must differ from a measured one to be kept beside it."""
 
 
 @dataclass(frozen=True)
@@ -136,8 +139,12 @@ def step_rows(library: Library, folder: Path) -> list[Row]:
     return rows
 
 
-def remembered_rows(library: Library) -> list[Row]:
-    """Values as remembered: the table of compounds, then the ortho constants of groups it does not list."""
+def remembered_rows(library: Library, measured: Iterable[Row] = ()) -> list[Row]:
+    """Values as remembered: the table of compounds, then the ortho constants of groups it does not list.
+
+    Compounds in `measured` are left out where both agree: a remembered value is no second witness for the print that it
+    comes from. Where they contradict each other both stay, and the fit weighs them.
+    """
     rows = [
         Row(line["groups"] or line["scaffold"], line["scaffold"], pattern(library, line["groups"]), float(line["pka"]),
             float(line["pka_sd"]), 1, REMEMBERED)
@@ -158,4 +165,5 @@ def remembered_rows(library: Library) -> list[Row]:
                       rho * value.sd, 1, REMEMBERED)  # fmt: skip
             if row.identity not in listed:
                 rows.append(row)
-    return rows
+    known = {row.identity: row.pka25 for row in measured}
+    return [row for row in rows if abs(known.get(row.identity, inf) - row.pka25) > CONTRADICTION * row.sd]

@@ -107,7 +107,7 @@ def make_design(rows: Sequence[Row]) -> Design:
         repeated=np.array([float(row.determinations > 1) for row in rows]),
         doubt=np.array([row.sd for row in rows]),
         n_ortho=np.array([float(sum(label in "26" for label in row.groups)) for row in rows]),
-        on_nitrogen=np.array([float(any(label.startswith("N") for label in row.groups)) for row in rows]),
+        on_nitrogen=np.array([float(sum(label.startswith("N") for label in row.groups)) for row in rows]),
         acceptors=np.array([_pulls(row) for row in rows]),
     )
 
@@ -230,7 +230,7 @@ def constants_of(made: Fit, result: Posterior | None = None) -> dict[str, Acidit
 
 
 def published_of(name: str, group: Substituent | None) -> float:
-    """The published constant that a group constant was fitted on (0 where there is none)."""
+    """The published sigma (dimensionless) that a group constant was fitted on, 0 where there is none."""
     column = name.partition(":")[0]
     if group is None or column == "nitrogen":
         return 0.0
@@ -270,7 +270,7 @@ def _constants(made: Fit, scaffold: str, result: Posterior) -> AcidityConstants:
 
 
 def spread_rows(made: Fit) -> list[tuple[str, str, float]]:
-    """(scaffold, name, value) of everything that is no parameter."""
+    """(scaffold, name, value in pKa units or dimensionless) of everything that is no parameter."""
     found = []
     for scaffold in SCAFFOLDS:
         scales = group_scales(scaffold, made.spreads)

@@ -27,8 +27,9 @@ COMMON_PRIORS = {
     "ortho_field": (2.5, 1.0), "ortho_resonance": (1.0, 1.0), "ortho_acceptor": (0.5, 1.0), "ortho_size": (0.0, 0.7),
     "ortho_large": (0.0, 0.7), "ortho_hbond_acceptor": (0.0, 0.8), "ortho_hbond_donor": (0.0, 0.5),
     "ortho_charge": (0.0, 1.5), "ortho_anion": (3.0, 2.0), "nitrogen_group": (0.3, 0.3), "nitrogen_field": (8.0, 5.0),
+    "nitrogen_unsaturated": (-0.7, 0.5),
     "nitrogen_medium": (0.6, 0.5), "nitrogen_large": (2.0, 1.0), "nitrogen_aryl": (-3.5, 2.0),
-    "alkyl_rho": (0.29, 0.15), "dialkyl_rho": (0.58, 0.15),
+    "crowding": (0.0, 0.3), "buttressing": (0.0, 0.3), "alkyl_rho": (0.29, 0.15), "dialkyl_rho": (0.58, 0.15),
 }  # fmt: skip
 """alkyl_rho, dialkyl_rho: rho rises from 2.88 (primary) to 3.46 (N,N-dialkyl)."""
 
@@ -47,20 +48,20 @@ class Spreads:
     `doubt` the true over the stated doubt of remembered values.
     """
 
-    error_meta: float = 1.2
-    error_para: float = 1.1
-    ortho_phenol: float = 0.24
-    ortho_aniline: float = 0.21
-    ortho_polar_factor: float = 2.3
-    nitrogen: float = 0.5
-    kin_share: float = 0.75
-    shared: float = 0.75
-    noise_phenol: float = 0.10
-    noise_aniline: float = 0.08
-    misfit_ortho: float = 0.06
-    misfit_nitrogen: float = 0.12
-    misfit_acceptors: float = 0.10
-    doubt: float = 0.5
+    error_meta: float = 0.94
+    error_para: float = 1.07
+    ortho_phenol: float = 0.26
+    ortho_aniline: float = 0.22
+    ortho_polar_factor: float = 2.1
+    nitrogen: float = 0.36
+    kin_share: float = 0.86
+    shared: float = 0.71
+    noise_phenol: float = 0.11
+    noise_aniline: float = 0.083
+    misfit_ortho: float = 0.061
+    misfit_nitrogen: float = 0.13
+    misfit_acceptors: float = 0.22
+    doubt: float = 0.45
 
 
 BOUNDED = ("kin_share", "shared")
@@ -77,14 +78,14 @@ SPREAD_PRIORS = {
 
 
 def encode(spreads: Spreads) -> FloatArray:
-    """Spreads on the scale on which they are fitted."""
+    """Spreads on the scale on which they are fitted (dimensionless)."""
     values = [getattr(spreads, f.name) for f in fields(Spreads)]
     scaled = [np.log(v / (1 - v)) if f.name in BOUNDED else np.log(v) for f, v in zip(fields(Spreads), values, strict=True)]
     return np.array(scaled)
 
 
 def decode(scaled: FloatArray) -> Spreads:
-    """Inverse of `encode`."""
+    """Inverse of `encode`: dimensionless numbers to spreads."""
     values = {
         f.name: float(1 / (1 + np.exp(-x)) if f.name in BOUNDED else np.exp(x))
         for f, x in zip(fields(Spreads), scaled, strict=True)
@@ -93,7 +94,7 @@ def decode(scaled: FloatArray) -> Spreads:
 
 
 def log_prior(scaled: FloatArray) -> float:
-    """Log density of the priors of the spreads, up to a constant."""
+    """Log density (dimensionless) of the priors of the spreads, up to a constant."""
     return float(
         sum(-0.5 * ((x - SPREAD_PRIORS[f.name][0]) / SPREAD_PRIORS[f.name][1]) ** 2
             for f, x in zip(fields(Spreads), scaled, strict=True))
@@ -104,12 +105,12 @@ class OpenScales(GroupScales):
     """Scales that take every group constant as in the fit, whatever the group: used while the fit is made."""
 
     def holds(self, name: str, published: float) -> bool:
-        """Always: each group that occurs gets a constant."""
+        """Always: each group that occurs gets a constant, whatever its published sigma."""
         return True
 
 
 def group_scales(scaffold: str, spreads: Spreads, published: dict[str, float] | None = None) -> GroupScales:
-    """The scales of one scaffold; open ones where `published` is not given."""
+    """The scales (pKa units) of one scaffold; open ones where `published` (sigma) is not given."""
     made = OpenScales if published is None else GroupScales
     return made(
         published=published or {},
