@@ -36,8 +36,6 @@ def run(reference: Path | None) -> None:
     for scaffold in dict.fromkeys(f.row.scaffold for f in found):
         show(_worst_table(scaffold, [f for f in found if f.row.scaffold == scaffold], made))
     if reference is not None:
-        _door_scores(reference)
-    if reference is not None:
         _show_molecules(reference)
 
 
@@ -72,55 +70,12 @@ def _show_molecules(reference: Path) -> None:
         for s in scores
     ]
     show(table("Whole molecules, by the shipped model", headings, rows))
-    for part in scores[:2]:
+    for part in (score for score in scores if not score.title.startswith(" ")):
         worst = [
             (m.name, m.label, f"{m.measured:.2f}", f"{m.predicted:.2f} ± {m.sd:.2f}") for m in part.worst
         ]
         columns = (("compound", "left"), ("step", "left"), ("measured", "right"), ("predicted ± sd", "right"))
         show(table(f"Worst of {part.title}", columns, worst))
-
-
-def _door_scores(folder: Path) -> None:
-    """The shipped model on molecules with several sites, on dyes and on temperature series of a folder."""
-    from tuner.library import load_library
-    from tuner.prediction.accuracy import accuracy_report
-    from tuner.prediction.acidity_face import shipped_model
-    from tuner.prediction.door import MoleculeDoor
-
-    library = load_library()
-    scores = accuracy_report(MoleculeDoor(library, shipped_model(library)), folder)
-    headings = (
-        ("set", "left"),
-        ("rows", "right"),
-        ("given", "right"),
-        (f"mean |error|, best {BEST_SHARE:.0%}", "right"),
-        ("median |error|", "right"),
-        (f"within {WITHIN:g}", "right"),
-        ("90 % interval holds", "right"),
-    )
-    rows = [
-        (
-            s.title,
-            str(s.rows),
-            f"{s.given:.0%}",
-            *(f"{value:.2f}" for value in (s.mean_best, s.median)),
-            *(f"{value:.0%}" for value in (s.within, s.coverage)),
-        )
-        for s in scores
-    ]
-    show(table("The shipped model as it is, on whole molecules", headings, rows))
-    for s in scores:
-        if not s.title.startswith(" "):
-            worst = [
-                (m.name, m.label, f"{m.measured:.2f}", f"{m.predicted:.2f} ± {m.sd:.2f}") for m in s.worst
-            ]
-            titles = (
-                ("molecule", "left"),
-                ("step", "left"),
-                ("measured", "right"),
-                ("predicted ± sd", "right"),
-            )
-            show(table(f"Worst: {s.title}", titles, worst))
 
 
 def _score_table(scores: Iterable[Score]) -> Table:

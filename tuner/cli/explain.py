@@ -15,7 +15,7 @@ from tuner.errors import StructureError
 from tuner.library import Library, load_library
 from tuner.library.catalogue import split_citation
 from tuner.prediction.records import Prediction, Term
-from tuner.report.digits import MISSING, drift, pka_text, signed
+from tuner.report.digits import drift, pka_text, signed
 from tuner.report.wording import CAUTIONS, medium_in_words
 
 
@@ -78,14 +78,22 @@ def _term_row(n: int, term: Term) -> tuple[str, ...]:
     )
 
 
+def _steps(answer: Prediction) -> str:
+    """Constants of the whole molecule, each with the group that mainly loses its proton in that step."""
+    kinds = answer.macroscopic_kinds or ("",) * len(answer.macroscopic_pkas)
+    return ", ".join(
+        f"{pka:.2f}" + (f" ({kind.replace('_', ' ')})" if kind else "")
+        for pka, kind in zip(answer.macroscopic_pkas, kinds, strict=True)
+    )
+
+
 def _results(answer: Prediction, medium: Medium) -> list[str]:
     """The numbers that follow from the sum."""
     lines = [f"  conditional pKa'  {pka_text(answer.pka, answer.pka_sd)} in {medium_in_words(medium)}"]
     if isfinite(answer.dpka_dt):
         lines.append(f"  drift             {drift(answer.dpka_dt)} pKa units per 10 K")
     if answer.macroscopic_pkas:
-        steps = ", ".join(f"{pka:.2f}" for pka in answer.macroscopic_pkas)
-        lines.append(f"  whole molecule    macroscopic pKa' {steps or MISSING}")
+        lines.append(f"  whole molecule    macroscopic pKa' {_steps(answer)}")
     if answer.known is not None:
         known = answer.known
         lines.append(f"  measured          {known.pka:.2f} at {known.temperature_c:g} °C ({known.source})")
