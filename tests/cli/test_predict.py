@@ -11,6 +11,7 @@ import pytest
 import tuner.cli.predict as predict_command
 from tests.cli.conftest import Tuner
 from tuner.cli.predict import ADDED
+from tuner.errors import LibraryError
 from tuner.prediction.records import Prediction
 
 MOLECULES = """\
@@ -130,6 +131,18 @@ def test_a_defect_costs_one_row_and_not_the_table(
     notes = {row["name"]: row["note"] for row in read("out.csv")}
     assert "ZeroDivisionError" in notes["aniline"]
     assert notes["phenol"] == ""
+
+
+def test_a_fault_of_the_library_stops_the_table(
+    tuner: Tuner, table: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    def fails(smiles: str) -> Prediction:
+        raise LibraryError("a cell is empty", place="groups.csv, row 3")
+
+    monkeypatch.setattr(predict_command, "predictor", lambda medium, overlay: fails)
+    seen = tuner("predict", str(table), "--out", "out.csv")
+    assert (seen.code, Path("out.csv").exists()) == (2, False)
+    assert "groups.csv, row 3" in seen.fault
 
 
 def test_a_missing_column_is_named(tuner: Tuner) -> None:

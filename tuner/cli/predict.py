@@ -100,6 +100,8 @@ def _safely(predict: Callable[[str], Prediction], smiles: str) -> Prediction:
     """A prediction; a defect of the program costs this row its number, never the rest of the table."""
     try:
         return predict(smiles)
+    except TunerError:  # not the molecule's fault: a table of the library is malformed
+        raise
     except Exception as fault:
         return Prediction(smiles, notes=(f"{DEFECT} ({type(fault).__name__})",))
 
