@@ -1,0 +1,118 @@
+"""How is a dye joined from two halves, and how many steps do the halves take?"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass, replace
+
+from tuner.library.reactions import Half, Joining
+from tuner.library.records import HYDROGEN_SHORT, Core
+from tuner.structure.cores import prepare_core
+from tuner.synthesis.alphabet import alphabet, leading_to
+from tuner.synthesis.lattice import Frame, Lattice, as_pattern, relax
+from tuner.synthesis.setting import Pattern, Stage, Workshop
+
+
+@dataclass(frozen=True)
+class HalfPlan:
+    """One half of a joining: its own patterns by the pattern that they give on the dye, with least step counts."""
+
+    half: Half
+    labels: tuple[str, ...]  # labels on the dye that this half decides (both arms, where it is doubled)
+    counts: Mapping[tuple[tuple[str, str], ...], int]  # pattern on the dye -> steps
+    own: Mapping[tuple[tuple[str, str], ...], tuple[tuple[str, str], ...]]  # pattern on the dye -> pattern of the half
+    lattice: Lattice | None  # None: a bottle
+    bottles: Mapping[tuple[tuple[str, str], ...], str]  # pattern of the half -> name of the bottle
+
+
+def core_lattice(workshop: Workshop, core: Core, wanted: Iterable[str], max_steps: int) -> Lattice:
+    """Step counts over the patterns of a core that is built from bottles of its own kind."""
+    stage = Stage(workshop, core)
+    prepared = prepare_core(core)
+    nitrogen = tuple(prepared.slot(label).relation == "nitrogen" for label in prepared.open_labels)
+    frame = Frame(prepared.open_labels, nitrogen, alphabet(leading_to(stage, wanted)))
+    start = [(dict(pattern), 0) for pattern in workshop.bought(core)]
+    return relax(stage, frame, start, max_steps)
+
+
+def plan_halves(
+    workshop: Workshop, joining: Joining, core: Core, wanted: Mapping[str, frozenset[str]], max_steps: int
+) -> tuple[HalfPlan, ...] | None:
+    """The halves of a joining with their step counts; None where a bottle or a role is missing.
+
+    Parameters
+    ----------
+    wanted : label on the dye -> groups that may have to stand there when the halves are joined
+    """
+    halves = joining.cores.get(core.name)
+    if halves is None or not workshop.bottles.offers(joining.roles):
+        return None
+    plans: list[HalfPlan] = []
+    for half in halves:
+        if half.twin:
+            plans[-1] = _doubled(plans[-1], half)
+        else:
+            plans.append(_plan_half(workshop, joining, half, wanted, max_steps))
+    return tuple(plans) if all(plan.counts for plan in plans) else None
+
+
+def _plan_half(
+    workshop: Workshop, joining: Joining, half: Half, wanted: Mapping[str, frozenset[str]], max_steps: int
+) -> HalfPlan:
+    back = {there: here for here, there in half.labels.items()}
+    if half.template:
+        bottles = workshop.bought_template(half.template)
+        found = {pattern: (pattern, 0) for pattern in bottles}
+        lattice = None
+    else:
+        core = workshop.library.cores[half.core]
+        groups = {HYDROGEN_SHORT, *half.fixed.values()}.union(*(wanted.get(label, frozenset()) for label in half.labels))
+        lattice = core_lattice(workshop, core, groups, max_steps)
+        bottles = workshop.bought(core)
+        rows, counts = lattice.reached()
+        patterns = (tuple(sorted(lattice.frame.pattern_of(row).items())) for row in rows)
+        found = {pattern: (pattern, int(n)) for pattern, n in zip(patterns, counts, strict=True)}
+    counts_by: dict[tuple[tuple[str, str], ...], int] = {}
+    own: dict[tuple[tuple[str, str], ...], tuple[tuple[str, str], ...]] = {}
+    for pattern, n in found.values():
+        dye = _on_the_dye(dict(pattern), half, back, joining.spoils)
+        if dye is None or any(short not in wanted.get(label, frozenset((short,))) for label, short in dye):
+            continue
+        if n < counts_by.get(dye, 256):
+            counts_by[dye], own[dye] = n, pattern
+    return HalfPlan(half, tuple(half.labels), counts_by, own, lattice, bottles)
+
+
+def _on_the_dye(
+    pattern: Pattern, half: Half, back: Mapping[str, str], spoils: frozenset[str]
+) -> tuple[tuple[str, str], ...] | None:
+    """The pattern on the dye that a half gives; None where the half does not fit the joining."""
+    if any(pattern.get(label) != short for label, short in half.fixed.items()):
+        return None
+    rest = {label: short for label, short in pattern.items() if label not in half.fixed}
+    if any(label in rest for label in half.free) or any(label not in back for label in rest):
+        return None
+    if any(short in spoils for short in rest.values()):
+        return None
+    return tuple(sorted((back[label], short) for label, short in rest.items()))
+
+
+def _doubled(plan: HalfPlan, twin: Half) -> HalfPlan:
+    """A half that is used twice: the same groups on both arms."""
+    other = {there: here for here, there in twin.labels.items()}
+    counts, own = {}, {}
+    for dye, n in plan.counts.items():
+        on_half = as_pattern((plan.half.labels[label], short) for label, short in dye)
+        both = tuple(sorted([*dye, *((other[label], short) for label, short in on_half.items())]))
+        counts[both], own[both] = n, plan.own[dye]
+    return replace(plan, labels=(*plan.labels, *twin.labels), counts=counts, own=own)
+
+
+def joined(plans: Sequence[HalfPlan]) -> dict[tuple[tuple[str, str], ...], int]:
+    """Patterns of the dye right after joining with the steps of all halves together, the joining step included."""
+    found: dict[tuple[tuple[str, str], ...], int] = {(): 1}
+    for plan in plans:
+        found = {
+            tuple(sorted((*one, *two))): n + m for one, n in found.items() for two, m in plan.counts.items()
+        }
+    return found
