@@ -12,7 +12,7 @@ import numpy as np
 from tuner.acidity.tables import PairwiseSum
 from tuner.search.space import CountLimit
 from tuner.search.tables import FLAG_UNIT, MASS_UNIT, PKA_UNIT, Condition, Goal, SpaceTables, fixed_sum
-from tuner.synthesis.records import NO_ROUTE, StepTable
+from tuner.synthesis.records import NO_ROUTE, SplitStepTable, StepPart, StepTable, StepWay
 
 Rng = np.random.Generator
 
@@ -66,15 +66,32 @@ def symmetric_sum(rng: Rng, shape, group, scale: float, base: float, grain: floa
     return PairwiseSum(base, tuple(by_orbit[o] for o in orbit), pair)
 
 
-def random_steps(rng: Rng, shape, group) -> StepTable:
-    """Random classes and counts, invariant under the group, some analogs without a route."""
+def random_steps(rng: Rng, shape, group) -> StepTable | SplitStepTable:
+    """Random classes and counts, invariant under the group, some analogs without a route; at times in two
+    ways of independent parts.
+    """
     n = len(shape)
+    if len(group) == 1 and n > 1 and rng.random() < 0.4:
+        return SplitStepTable(tuple(_random_way(rng, shape) for _ in range(int(rng.integers(1, 3)))))
     orbit = orbits(group, n)
     classes = {o: rng.integers(0, 3, shape[orbit.index(o)]) for o in sorted(set(orbit))}
     counts = rng.integers(0, 5, (3,) * n).astype(np.uint8)
     counts[rng.random((3,) * n) < 0.1] = NO_ROUTE
     counts = np.min([counts.transpose(g) for g in group], axis=0)
     return StepTable(tuple(classes[o] for o in orbit), counts)
+
+
+def _random_way(rng: Rng, shape) -> StepWay:
+    """A constant and two parts that share out the positions."""
+    order = rng.permutation(len(shape))
+    cut = int(rng.integers(1, len(shape)))
+    parts = []
+    for positions in (order[:cut], order[cut:]):
+        counts = rng.integers(0, 4, (3,) * len(positions)).astype(np.uint8)
+        counts[rng.random(counts.shape) < 0.1] = NO_ROUTE
+        classes = tuple(rng.integers(0, 3, shape[p]) for p in positions)
+        parts.append(StepPart(tuple(int(p) for p in positions), classes, counts))
+    return StepWay(int(rng.integers(0, 2)), tuple(parts))
 
 
 def random_limits(rng: Rng, shape, group) -> tuple[CountLimit, ...]:

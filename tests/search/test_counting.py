@@ -61,7 +61,7 @@ def test_patterns_by_steps_equal_a_list(seed):
     table = random_steps(rng, shape, (tuple(range(len(shape))),))
     found = table.at(every_row(shape))
     listed = {int(s): int((found == s).sum()) for s in np.unique(found)}
-    assert count_by_steps(table.class_of, table.counts) == listed
+    assert count_by_steps(table) == (listed if len(table.ways) == 1 else {})
 
 
 def test_cycles_of_a_rotation():

@@ -12,11 +12,13 @@ from functools import cached_property
 from math import prod
 
 import numpy as np
+from numpy.typing import NDArray
 
 from tuner.acidity.tables import FloatArray, IntArray
 from tuner.search.evaluate import standard_error
 from tuner.search.probability import Interval, hit_probability
 from tuner.search.tables import PKA_UNIT, FixedSum, Goal, Int32, Int64, SpaceTables, in_ph
+from tuner.synthesis.records import NO_ROUTE, StepPart, Steps
 
 LARGEST_BLOCK = 2**20
 """Analogs per block at most: 4 MiB per whole-number array, a few of them stay in the cache of one core."""
@@ -96,6 +98,33 @@ class BlockValues:
     offset: FloatArray
 
 
+def step_grid(steps: Steps, prefix: Sequence[int], inner_shape: Sequence[int]) -> NDArray[np.uint8]:
+    """Step counts over the grid of the last positions, the first ones fixed: least over ways of sums of
+    parts.
+    """
+    start = len(prefix)
+    best = np.full(tuple(inner_shape), NO_ROUTE, dtype=np.uint8)
+    for way in steps.ways:
+        total = np.full([1] * len(inner_shape), way.constant, dtype=np.int16)
+        for part in way.parts:
+            total = total + _part_grid(part, prefix, start, len(inner_shape))
+        np.minimum(best, np.minimum(total, NO_ROUTE).astype(np.uint8), out=best)
+    return best
+
+
+def _part_grid(part: StepPart, prefix: Sequence[int], start: int, n_inner: int) -> NDArray[np.int16]:
+    """One part over the inner grid, with axes of length 1 where it does not depend on a position."""
+    order = np.argsort(part.positions)
+    counts = np.transpose(part.counts, order)
+    positions = [part.positions[k] for k in order]
+    class_of = [part.class_of[k] for k in order]
+    fixed = tuple(int(c[prefix[p]]) for p, c in zip(positions, class_of, strict=True) if p < start)
+    inner = [(p, c) for p, c in zip(positions, class_of, strict=True) if p >= start]
+    grid = counts[fixed][np.ix_(*(c for _, c in inner))] if inner else counts[fixed]
+    lengths = {p - start: len(c) for p, c in inner}
+    return np.asarray(grid, dtype=np.int16).reshape([lengths.get(axis, 1) for axis in range(n_inner)])
+
+
 class BlockPlan:
     """The blocks of one core's space, numbered in the lexicographic order of their prefixes."""
 
@@ -110,7 +139,6 @@ class BlockPlan:
         self.mass = SumGrid(tables.mass, self.start)
         self.conditions = [SumGrid(c.pka, self.start) for c in tables.conditions]
         self.condition_variances = [SumGrid(c.variance, self.start) for c in tables.conditions]
-        self._classes = np.ix_(*tables.steps.class_of[self.start :])
 
     def prefixes(self, numbers: IntArray) -> Int64:
         """Prefix choices of these blocks, shape (n_blocks, n_prefix_positions)."""
@@ -127,8 +155,7 @@ class BlockPlan:
 
     def steps(self, prefix: Sequence[int]) -> np.ndarray[tuple[int, ...], np.dtype[np.uint8]]:
         """Step counts over the inner grid."""
-        outer = tuple(int(c[k]) for c, k in zip(self.tables.steps.class_of, prefix, strict=False))
-        return np.asarray(self.tables.steps.counts[outer][self._classes])
+        return step_grid(self.tables.steps, prefix, self.inner_shape)
 
     def evaluate(self, prefix: Sequence[int], goal: Goal) -> BlockValues:
         """Full evaluation of one block; the same numbers as `evaluate_rows` on its rows."""

@@ -38,9 +38,13 @@ def problem_digest(spaces: Sequence[SpaceTables], goal: Goal, best_n: int, resol
         digest.update(repr((tables.name, tables.rank, tables.shape, tables.symmetry)).encode())
         for table in (tables.pka, tables.variance, tables.mass, tables.flags):
             add_sum(table)
-        for classes in tables.steps.class_of:
-            add(classes)
-        add(tables.steps.counts)
+        for way in tables.steps.ways:
+            digest.update(repr(way.constant).encode())
+            for part in way.parts:
+                digest.update(repr(part.positions).encode())
+                add(part.counts)
+                for classes in part.class_of:
+                    add(classes)
         for limit in tables.limits:
             digest.update(repr((limit.name, limit.low, limit.high)).encode())
             for weights in limit.weights:

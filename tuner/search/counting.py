@@ -6,12 +6,14 @@ Exact whole numbers (Python integers), by dynamic programming over positions; no
 from __future__ import annotations
 
 from collections.abc import Sequence
+from typing import Any
 
 import numpy as np
 
 from tuner.acidity.tables import IntArray
 from tuner.search.space import CountLimit
 from tuner.search.symmetry import Permutation, cycles
+from tuner.synthesis.records import NO_ROUTE, StepPart, Steps
 
 State = tuple[int, ...]
 
@@ -78,30 +80,45 @@ def within_limits(
     return good
 
 
-def count_by_steps(
-    class_of: Sequence[IntArray], counts: np.ndarray[tuple[int, ...], np.dtype[np.uint8]]
-) -> dict[int, int]:
+def count_by_steps(steps: Steps) -> dict[int, int]:
     """Number of patterns for each step count, from the classes alone; limits and symmetry are not
     considered.
 
+    Empty where there are several ways to the analogs, since then no class tells which is shorter.
+
     Examples
     --------
-    >>> import numpy as np
-    >>> count_by_steps([np.array([0, 1, 1])], np.array([0, 2], dtype=np.uint8))
+    >>> from tuner.synthesis.records import StepTable
+    >>> count_by_steps(StepTable((np.array([0, 1, 1]),), np.array([0, 2], dtype=np.uint8)))
     {0: 1, 2: 2}
     """
-    weights = [np.bincount(classes, minlength=counts.shape[p]) for p, classes in enumerate(class_of)]
+    if len(steps.ways) != 1:
+        return {}
+    way = steps.ways[0]
+    total = {way.constant: 1}
+    for part in way.parts:
+        found: dict[int, int] = {}
+        for count, n in _part_histogram(part).items():
+            for before, m in total.items():
+                both = min(before + count, NO_ROUTE)
+                found[both] = found.get(both, 0) + n * m
+        total = found
+    return dict(sorted(total.items()))
+
+
+def _part_histogram(part: StepPart) -> dict[int, int]:
+    """Number of choices of a part's positions for each of its counts."""
+    weights = [
+        np.bincount(classes, minlength=part.counts.shape[p]) for p, classes in enumerate(part.class_of)
+    ]
     found: dict[int, int] = {}
-    for steps in np.unique(counts):
-        total = (counts == steps).astype(np.float64 if _large(weights) else np.int64)
-        for weight in reversed(weights):
-            total = total @ weight.astype(total.dtype)
-        found[int(steps)] = int(total)
-    return {steps: n for steps, n in found.items() if n}
-
-
-def _large(weights: Sequence[IntArray]) -> bool:
-    """Whether the number of patterns is beyond 64-bit whole numbers (then counts are rounded to 16
-    digits).
-    """
-    return sum(float(np.log2(max(1, int(w.sum())))) for w in weights) > 62.0
+    for count in np.unique(part.counts).tolist():
+        number = 0
+        for first, slab in zip(weights[0].tolist(), part.counts, strict=True):
+            inside: Any = (slab == count).astype(np.int64)
+            for weight in reversed(weights[1:]):
+                inside = inside @ weight
+            number += first * int(inside)
+        if number:
+            found[int(count)] = number
+    return found

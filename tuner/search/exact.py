@@ -27,7 +27,7 @@ from tuner.search.found import Certificate, Found
 from tuner.search.probability import farthest_useful_offset, hit_bound
 from tuner.search.result import Progress
 from tuner.search.standing import NEVER, Standing
-from tuner.search.tables import HIGHEST_WHOLE, MASS_UNIT, PKA_UNIT, Goal, Int64, SpaceTables, in_ph
+from tuner.search.tables import HIGHEST_WHOLE, MASS_UNIT, PKA_UNIT, Goal, Int32, Int64, SpaceTables, in_ph
 
 CHUNKS_WANTED = 256
 """Work is handed out in about so many chunks: fine enough for progress and even load, coarse enough to cost
@@ -111,60 +111,74 @@ class ChunkSearcher:
         """
         if not bound.useful(standing)[0]:
             return 0
-        farthest = self._farthest(bound, standing)
-        offset = self._offsets(plan, prefix)
-        inside: IntArray = np.flatnonzero(offset.ravel() <= farthest)
+        for_front, for_score = self._farthest(bound, standing)
+        main, worst = self._offsets(plan, prefix)
+        close = (
+            worst <= max(for_front, for_score)
+            if worst is main
+            else (worst <= for_front) | (main <= for_score)
+        )
+        inside: IntArray = np.flatnonzero(close)
         if len(inside):
-            inside = self._worth(
-                plan, prefix, inside, offset.ravel()[inside].astype(np.int64), bound, standing
-            )
+            near = main.ravel()[inside].astype(np.int64), worst.ravel()[inside].astype(np.int64)
+            inside = self._worth(plan, prefix, inside, near, bound, standing)
             rows = plan.rows(prefix.tolist(), inside)
             standing.offer(evaluate_admitted(plan.tables, self.search.goal, rows))
         return plan.inner_size
 
-    def _farthest(self, bound: Bounds, standing: Standing) -> int:
-        """Whole-number offset beyond which no analog of the block matters."""
+    def _farthest(self, bound: Bounds, standing: Standing) -> tuple[int, int]:
+        """Whole-number offsets beyond which no analog of the block matters to the front, and to the best
+        N.
+        """
         goal = self.search.goal
         ceiling = int(standing.offset_ceiling(bound.steps, bound.mass)[0])
         for_front = HIGHEST_WHOLE if ceiling == NEVER else ceiling * standing.resolution - 1
         least_hit = standing.score_floor() + bound.costs - SCORE_SLACK
         far = float(farthest_useful_offset(least_hit, goal.tolerance, bound.sd_low, bound.sd_high)[0])
         for_score = HIGHEST_WHOLE if far == np.inf else int(np.ceil(far / PKA_UNIT))
-        return min(HIGHEST_WHOLE, max(for_front, for_score))
+        return min(HIGHEST_WHOLE, for_front), min(HIGHEST_WHOLE, for_score)
 
-    def _offsets(self, plan: BlockPlan, prefix: Int64) -> np.ndarray[tuple[int, ...], np.dtype[np.int32]]:
-        """Whole-number offsets over the inner grid; analogs that miss a further target get the largest
-        number.
+    def _offsets(self, plan: BlockPlan, prefix: Int64) -> tuple[Int32, Int32]:
+        """Whole-number offsets over the inner grid: from the target, and the worst over all targets at
+        which to switch.
+
+        Analogs that miss a further target get the largest number in both. Without such targets both are one
+        array.
         """
-        offset = plan.pka.values(prefix.tolist(), -self.search.goal.target)
-        np.abs(offset, out=offset)
+        main = plan.pka.values(prefix.tolist(), -self.search.goal.target)
+        np.abs(main, out=main)
+        worst = main.copy() if any(c.centre is not None for c in plan.tables.conditions) else main
         for condition, grid in zip(plan.tables.conditions, plan.conditions, strict=True):
             there = grid.values(prefix.tolist())
-            offset[(there < condition.low) | (there > condition.high)] = np.iinfo(np.int32).max
             if condition.centre is not None:
-                np.maximum(offset, np.abs(there - np.int32(condition.centre)), out=offset)
-        return offset
+                np.maximum(worst, np.abs(there - np.int32(condition.centre)), out=worst)
+            missed = (there < condition.low) | (there > condition.high)
+            main[missed] = worst[missed] = np.iinfo(np.int32).max
+        return main, worst
 
     def _worth(
         self,
         plan: BlockPlan,
         prefix: Int64,
         inside: IntArray,
-        offset: Int64,
+        near: tuple[Int64, Int64],
         bound: Bounds,
         standing: Standing,
     ) -> IntArray:
-        """Of the analogs close enough, those whose own steps and mass still let them matter."""
+        """Of the analogs close enough (`near`: both offsets), those whose own steps and mass still let them
+        matter.
+        """
         goal = self.search.goal
         steps = plan.steps(prefix.tolist()).ravel()[inside].astype(np.int64)
         mass = plan.mass.values(prefix.tolist()).ravel()[inside].astype(np.int64)
         good = (steps <= goal.max_steps) & (mass <= goal.mass_ceiling)
-        inside, offset, steps, mass = inside[good], offset[good], steps[good], mass[good]
+        main, worst = near[0][good], near[1][good]
+        inside, steps, mass = inside[good], steps[good], mass[good]
         dearer = goal.step_costs * (steps - bound.steps[0])
         dearer += goal.hundred_g_mol_costs * MASS_UNIT / 100.0 * (mass - bound.mass[0])
-        best_hit = hit_bound(in_ph(offset), goal.tolerance, bound.sd_low, bound.sd_high)
+        best_hit = hit_bound(in_ph(main), goal.tolerance, bound.sd_low, bound.sd_high)
         good = best_hit - bound.costs[0] - dearer + SCORE_SLACK >= standing.score_floor()
-        good |= offset // standing.resolution < standing.offset_ceiling(steps, mass)
+        good |= worst // standing.resolution < standing.offset_ceiling(steps, mass)
         return np.asarray(inside[good])
 
 

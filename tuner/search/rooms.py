@@ -30,7 +30,7 @@ from tuner.search.space import Choice, CoreSpace, DesignSpace
 from tuner.search.tables import FLAG_UNIT, MASS_UNIT, PKA_UNIT, Goal, SpaceTables, fixed_sum
 from tuner.search.targets import condition
 from tuner.structure.molecule import molar_mass
-from tuner.synthesis.records import Route, StepTable
+from tuner.synthesis.records import Route, Steps
 
 if TYPE_CHECKING:
     from tuner.prediction.door import MoleculeDoor
@@ -253,7 +253,7 @@ class Rooms:
         """Reagents, reactions and what can be made of them."""
         return Shelf(self.brief, self.library)
 
-    def step_table(self, space: CoreSpace) -> StepTable:
+    def step_table(self, space: CoreSpace) -> Steps:
         """Minimum step counts over one space."""
         return self.shelf.step_table(space)
 

@@ -50,7 +50,7 @@ class Shelf:
         """How many patterns have no route, and how many take too many steps."""
         none = beyond = 0
         for tables in spaces:
-            for steps, n in count_by_steps(tables.steps.class_of, tables.steps.counts).items():
+            for steps, n in count_by_steps(tables.steps).items():
                 none += n if steps == NO_ROUTE else 0
                 beyond += n if max_steps < steps < NO_ROUTE else 0
         return (

@@ -17,7 +17,7 @@ from numpy.typing import NDArray
 from tuner.acidity.tables import FloatArray, IntArray, Pair, PairwiseSum
 from tuner.errors import SearchError
 from tuner.search.space import CountLimit
-from tuner.synthesis.records import StepTable
+from tuner.synthesis.records import Steps
 
 Int32 = NDArray[np.int32]
 Int64 = NDArray[np.int64]
@@ -124,7 +124,7 @@ class SpaceTables:
     variance: FixedSum
     mass: FixedSum
     flags: FixedSum
-    steps: StepTable
+    steps: Steps
     limits: tuple[CountLimit, ...] = ()
     symmetry: tuple[tuple[int, ...], ...] = ()
     conditions: tuple[Condition, ...] = ()
