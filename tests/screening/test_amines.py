@@ -62,6 +62,7 @@ def test_a_dye_made_from_a_listed_amine_releases_it(amine: RestrictedAmine) -> N
         ("Oc1ccc2ccccc2c1N=Nc1ccccc1C", "o-toluidine"),  # Oil Orange SS
         ("Oc1ccc(N=Nc2ccc(N=Nc3ccccc3)cc2)cc1", "4-aminoazobenzene"),
         ("Nc1ccc(N=Nc2ccccc2)cc1", "4-aminoazobenzene"),  # is itself on the list
+        ("Nc1ccc(/N=N/c2ccccc2)cc1", "4-aminoazobenzene"),
         ("Nc1ccc(N=Nc2ccccc2C)cc1C", "o-aminoazotoluene"),
     ],
 )

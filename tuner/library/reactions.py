@@ -1,7 +1,7 @@
 """Which reactions may be used, what do they do, and what do they need?
 
-Rules are data: `libraries/reactions.toml`. This module turns them into records and names every slip by file and key.
-What a rule means on a pattern of groups is the business of the synthesis room.
+Rules are data: `libraries/reactions.toml`. This module turns them into records and names every slip by file
+and key. What a rule means on a pattern of groups is the business of the synthesis room.
 """
 
 from __future__ import annotations
@@ -10,10 +10,12 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 from functools import lru_cache
 from pathlib import Path
+from typing import Any
 
 from tuner.errors import LibraryError
 from tuner.library.checks import nearest
 from tuner.library.folders import data_folder
+from tuner.library.load import OWN_SOURCE
 from tuner.library.records import Substituent
 from tuner.library.tables import Table, read_toml
 
@@ -29,7 +31,8 @@ PLACES = ("para first", "ortho or para", "ortho")
 class Reaction:
     """One rule that changes one position (or all alike positions at once) of a pattern.
 
-    `gives` maps the short name of the group that results to the SMILES of the bottle that brings it ("" where the roles suffice).
+    `gives` maps the short name of the group that results to the SMILES of the bottle that brings it ("" where
+    the roles suffice).
     """
 
     name: str
@@ -112,19 +115,42 @@ class ReactionBook:
             tuple(p for p in self.protections if p.name not in off),
         )
 
+    def under(self, top: ReactionBook) -> ReactionBook:
+        """This book with the rules of another laid over it: the same name replaces, a new name is added."""
+
+        def laid(below: tuple[Any, ...], above: tuple[Any, ...]) -> tuple[Any, ...]:
+            return tuple({rule.name: rule for rule in (*below, *above)}.values())
+
+        return ReactionBook(
+            {**self.roles, **top.roles},
+            {**self.steering, **top.steering},
+            laid(self.reactions, top.reactions),
+            laid(self.joinings, top.joinings),
+            laid(self.protections, top.protections),
+        )
+
     @property
     def names(self) -> tuple[str, ...]:
         """Names of all rules, for lists and for `switched_off`."""
-        return tuple(r.name for r in (*self.reactions, *self.joinings, *self.protections))
+        rules: tuple[Reaction | Joining | Protection, ...] = (
+            *self.reactions,
+            *self.joinings,
+            *self.protections,
+        )
+        return tuple(rule.name for rule in rules)
 
 
-def load_reactions(substituents: Mapping[str, Substituent], path: Path | None = None) -> ReactionBook:
-    """Read and check a rule file (default: the shipped one).
+def load_reactions(
+    substituents: Mapping[str, Substituent], path: Path | None = None, overlay: Path | None = None
+) -> ReactionBook:
+    """Read and check a rule file (default: the shipped one), a user's own rules laid over it.
 
     Parameters
     ----------
     substituents : mapping short name -> Substituent
         The groups that rules may name.
+    overlay : Path, optional
+        The user's folder; its `reactions.toml`, if there is one, may leave out shipped roles and sources.
 
     Raises
     ------
@@ -132,14 +158,21 @@ def load_reactions(substituents: Mapping[str, Substituent], path: Path | None = 
         Unknown group, role, kind or key; an exchange that gives what it takes; a rule without source.
     """
     file = path or data_folder() / REACTIONS_FILE
-    return _read(file, tuple(substituents.values()))
+    groups = tuple(substituents.values())
+    shipped = _read(file, groups, (), "")
+    own = overlay / REACTIONS_FILE if overlay is not None else None
+    if own is None or not own.is_file():
+        return shipped
+    return shipped.under(_read(own, groups, tuple(shipped.roles.items()), OWN_SOURCE))
 
 
 @lru_cache(maxsize=8)
-def _read(path: Path, groups: tuple[Substituent, ...]) -> ReactionBook:
+def _read(
+    path: Path, groups: tuple[Substituent, ...], known_roles: tuple[tuple[str, str], ...], default_source: str
+) -> ReactionBook:
     table = read_toml(path, error=LibraryError)
     table.only("roles", "steering", "reaction", "joining", "protection")
-    reader = _Reader(groups, table)
+    reader = _Reader(groups, table, dict(known_roles), default_source)
     return ReactionBook(
         roles=reader.roles,
         steering=reader.steering(table.table("steering")),
@@ -152,11 +185,18 @@ def _read(path: Path, groups: tuple[Substituent, ...]) -> ReactionBook:
 class _Reader:
     """Turns tables into records, with the known groups and roles at hand."""
 
-    def __init__(self, groups: tuple[Substituent, ...], table: Table) -> None:
+    def __init__(
+        self,
+        groups: tuple[Substituent, ...],
+        table: Table,
+        known_roles: Mapping[str, str],
+        default_source: str,
+    ) -> None:
         self.groups = {g.short: g for g in groups}
         self.families = {g.family for g in groups}
         roles = table.table("roles")
-        self.roles = {name: roles.text(name) for name in roles.values}
+        self.roles = {**known_roles, **{name: roles.text(name) for name in roles.values}}
+        self.default_source = default_source or None
 
     @staticmethod
     def inner(table: Table) -> list[tuple[str, Table]]:
@@ -176,7 +216,9 @@ class _Reader:
             if name.startswith("family:"):
                 family = name.removeprefix("family:")
                 if family not in self.families:
-                    raise LibraryError(f"unknown family '{family}'", place=place, remedy=nearest(family, self.families))
+                    raise LibraryError(
+                        f"unknown family '{family}'", place=place, remedy=nearest(family, self.families)
+                    )
                 found |= {g.short for g in self.groups.values() if g.family == family}
             elif name in self.groups:
                 found.add(name)
@@ -194,8 +236,24 @@ class _Reader:
 
     def reaction(self, name: str, table: Table) -> Reaction:
         table.only(
-            "title", "kind", "takes", "gives", "roles", "tags", "spoils", "needs_acceptor", "all_at_once", "floods",
-            "places", "burden", "on_phenol", "on_amine", "on_tertiary_amine", "cautions", "source", "note",
+            "title",
+            "kind",
+            "takes",
+            "gives",
+            "roles",
+            "tags",
+            "spoils",
+            "needs_acceptor",
+            "all_at_once",
+            "floods",
+            "places",
+            "burden",
+            "on_phenol",
+            "on_amine",
+            "on_tertiary_amine",
+            "cautions",
+            "source",
+            "note",
         )
         gives = table.table("gives")
         made = {short: gives.text(short, default="") for short in gives.values}
@@ -232,7 +290,7 @@ class _Reader:
             on_amine=table.one_of("on_amine", MANNERS, default="free"),
             on_tertiary_amine=table.one_of("on_tertiary_amine", MANNERS, default="free"),
             cautions=tuple(table.texts("cautions")),
-            source=table.text("source"),
+            source=table.text("source", self.default_source),
             note=table.text("note", default=""),
         )
 
@@ -249,7 +307,7 @@ class _Reader:
             self.expand(table.texts("spoils"), table.place("spoils")),
             cores,
             tuple(table.texts("cautions")),
-            table.text("source"),
+            table.text("source", self.default_source),
             table.text("note", default=""),
         )
 
@@ -275,5 +333,5 @@ class _Reader:
             table.one_of("steers", STEERING),
             self.role_list(table, "roles_on"),
             self.role_list(table, "roles_off"),
-            table.text("source"),
+            table.text("source", self.default_source),
         )

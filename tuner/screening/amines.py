@@ -24,9 +24,10 @@ def released_amines(smiles: str, rules: HazardRules) -> tuple[RestrictedAmine, .
     itself on the list counts as releasing it. Raises StructureError where the structure cannot be treated.
     """
     pieces = {canonical_smiles(smiles)}
-    if may_hold_azo(smiles):
+    azo = may_hold_azo(smiles)
+    if azo:
         pieces |= set(cleave_azo(smiles))
-    if set(smiles) & SALT_SIGNS:
+    if azo or set(smiles) & SALT_SIGNS:  # drawn with its geometry, or as a salt, it is the same compound
         pieces.add(identity_key(smiles))
     return tuple(amine for amine in rules.amines if amine.smiles in pieces)
 
