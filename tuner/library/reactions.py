@@ -22,7 +22,7 @@ from tuner.library.tables import Table, read_toml
 REACTIONS_FILE = "reactions.toml"
 KINDS = ("ring substitution", "exchange", "on nitrogen")
 MANNERS = ("free", "protect", "never")
-"""How a rule stands to the free reporting group: it tolerates it, needs it protected, or cannot be used at all."""
+"""How a rule stands to the free reporting group: tolerates it, needs it protected, or cannot be used."""
 STEERING = ("strong", "medium", "weak", "halogen", "meta", "strong meta")
 PLACES = ("para first", "ortho or para", "ortho")
 
@@ -58,13 +58,14 @@ class Reaction:
 
 @dataclass(frozen=True, slots=True)
 class Half:
-    """One half of a joining step: a core of the library with labels carried over, or a template met by bottles only."""
+    """One half of a joining step: a core with labels carried over, or a template met by bottles only."""
 
     core: str = ""
     template: str = ""
     labels: Mapping[str, str] = field(default_factory=dict)  # label on the dye -> label on the half
     fixed: Mapping[str, str] = field(default_factory=dict)  # label on the half -> short name it must bear
     free: tuple[str, ...] = ()  # labels on the half that must bear hydrogen
+    spoils: frozenset[str] = frozenset()  # groups that must not stand on this half
     twin: bool = False  # a second copy of the half before it: the dye carries the same groups on both arms
 
 
@@ -312,7 +313,7 @@ class _Reader:
         )
 
     def half(self, table: Table, name: str) -> Half:
-        table.only("core", "template", "labels", "fixed", "free")
+        table.only("core", "template", "labels", "fixed", "free", "spoils")
         labels, fixed = table.table("labels"), table.table("fixed")
         bears = {label: fixed.text(label) for label in fixed.values}
         self.expand(bears.values(), table.place("fixed"))
@@ -322,6 +323,7 @@ class _Reader:
             labels={label: labels.text(label) for label in labels.values},
             fixed=bears,
             free=tuple(table.texts("free")),
+            spoils=self.expand(table.texts("spoils"), table.place("spoils")),
             twin=name == "twin",
         )
 
