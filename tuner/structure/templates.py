@@ -6,6 +6,7 @@ planner asks for patterns, not for one name of a compound.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import lru_cache
@@ -15,9 +16,12 @@ from rdkit import Chem
 
 from tuner.errors import StructureError
 from tuner.library.records import Core
+from tuner.structure.assemble import branch_of, written
 from tuner.structure.cores import form_of
 from tuner.structure.cutting import cut_groups
+from tuner.structure.groups import HYDROGEN_GROUP
 from tuner.structure.molecule import flat, parse
+from tuner.structure.neutral import short
 
 Mol = Any
 
@@ -180,3 +184,29 @@ def _kind_carried(atom: Any, ring_atom: Any) -> str:
         b.GetBondTypeAsDouble() >= 2.0 and b.GetOtherAtom(atom).GetAtomicNum() in (7, 8) for b in atom.GetBonds()
     )
     return "COMe" if acceptor else "Me"
+
+
+def capped(core: Core, groups: Mapping[str, str], cap: str) -> str:
+    """The molecule with a temporary group on its reporting atom: `cap` is a SMILES whose last atom is bound to it.
+
+    >>> capped(Core("x", "", "Oc1c([*:2])cccc1", "phenol"), {"2": "*Br"}, "C")
+    'COc1ccccc1Br'
+    """
+    text = f"{cap}{written(core, groups)}"
+    mol = Chem.MolFromSmiles(text)
+    if mol is None:
+        raise StructureError(f"'{short(text)}' cannot exist", place=f"core '{core.name}'", remedy="check the cap")
+    return str(Chem.MolToSmiles(flat(mol)))
+
+
+def filled(template: str, groups: Mapping[str, str], labels: Mapping[int, str] | None = None) -> str:
+    """A template with groups on its positions, hydrogen elsewhere; canonical SMILES."""
+    text = template
+    for number in {int(n) for n in re.findall(r"\[\*:(\d+)\]", template)}:
+        label = (labels or {}).get(number, str(number))
+        branch = branch_of(groups.get(label, HYDROGEN_GROUP)).removeprefix("-")
+        text = text.replace(f"[*:{number}]", f"{branch}" if branch else "[H]")
+    mol = Chem.MolFromSmiles(text)
+    if mol is None:
+        raise StructureError(f"'{short(text)}' cannot exist", place="template", remedy="check the template")
+    return str(Chem.MolToSmiles(flat(mol)))

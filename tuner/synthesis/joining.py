@@ -75,7 +75,7 @@ def _plan_half(
     counts_by: dict[tuple[tuple[str, str], ...], int] = {}
     own: dict[tuple[tuple[str, str], ...], tuple[tuple[str, str], ...]] = {}
     for pattern, n in found.values():
-        dye = _on_the_dye(dict(pattern), half, back, joining.spoils)
+        dye = _on_the_dye(dict(pattern), half, back, joining.spoils | half.spoils)
         if dye is None or any(short not in wanted.get(label, frozenset((short,))) for label, short in dye):
             continue
         if n < counts_by.get(dye, 256):

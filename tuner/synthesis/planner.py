@@ -19,7 +19,7 @@ from tuner.synthesis.alphabet import alphabet, leading_to
 from tuner.synthesis.compress import step_part
 from tuner.synthesis.joining import HalfPlan, joined, plan_halves
 from tuner.synthesis.lattice import Frame, Lattice, as_pattern, relax
-from tuner.synthesis.records import SplitStepTable, Steps, StepTable, StepWay
+from tuner.synthesis.records import NO_ROUTE, SplitStepTable, Steps, StepTable, StepWay
 from tuner.synthesis.setting import Stage, Workshop
 
 MOST_IN_ONE_PIECE = 5
@@ -54,11 +54,18 @@ class CorePlan:
     workshop: Workshop
     core: Core
     max_steps: int
-    steps: Steps
     whole: Lattice | None  # everything in one lattice
     joined_starts: Mapping[tuple[tuple[str, str], ...], int] = field(default_factory=dict)
     joinings: tuple[JoinedWay, ...] = ()
     bought: tuple[BoughtWay, ...] = ()
+
+    @property
+    def lattice_ways(self) -> tuple[tuple[int, tuple[Lattice, ...]], ...]:
+        """Each way as constant steps and the lattices whose counts add up."""
+        if self.whole is not None:
+            return ((0, (self.whole,)),)
+        ways = [(1, tuple(x for x in way.finished if x is not None)) for way in self.joinings]
+        return (*ways, *((0, way.finished) for way in self.bought))
 
 
 def plan_core(workshop: Workshop, core: Core, choices: Choices, max_steps: int) -> CorePlan:
@@ -73,7 +80,7 @@ def plan_core(workshop: Workshop, core: Core, choices: Choices, max_steps: int) 
     Returns
     -------
     CorePlan
-        `.steps` is the table for the search; the rest serves to write routes.
+        For `steps_over`, `makeable` and `routes.routes_to`.
     """
     labels = prepare_core(core).open_labels
     listed = dict(zip(labels, choices, strict=True))
@@ -106,9 +113,7 @@ def _in_one_piece(
                     starts[pattern] = min(n, starts.get(pattern, n))
     begin = [*((dict(p), n) for p, n in starts.items()), *((dict(p), 0) for p in workshop.bought(core))]
     lattice = relax(stage, frame, begin, max_steps)
-    part = step_part(lattice, range(len(labels)), list(listed.values()))
-    table = StepTable(part.class_of, part.counts)
-    return CorePlan(workshop, core, max_steps, table, lattice, starts, tuple(ways))
+    return CorePlan(workshop, core, max_steps, lattice, starts, tuple(ways))
 
 
 def _in_parts(
@@ -117,7 +122,6 @@ def _in_parts(
     stage = Stage(workshop, core, finishing=True)
     wanted = {label: leading_to(stage, own) for label, own in listed.items()}
     order = list(listed)
-    ways: list[StepWay] = []
     joinings: list[JoinedWay] = []
     split: tuple[tuple[str, ...], ...] = ()
     for joining in halved:
@@ -129,9 +133,7 @@ def _in_parts(
             for plan in halves
         )
         joinings.append(JoinedWay(joining, halves, finished))
-        lattices = [lattice for lattice in finished if lattice is not None]
-        split = split or tuple(lattice.frame.labels for lattice in lattices)
-        ways.append(_way(1, lattices, listed, order))
+        split = split or tuple(lattice.frame.labels for lattice in finished if lattice is not None)
     bought = []
     for pattern, bottle in workshop.bought(core).items():
         mine = dict(pattern)
@@ -140,10 +142,7 @@ def _in_parts(
             for labels in split or (tuple(order),)
         ]
         bought.append(BoughtWay(bottle, pattern, tuple(lattices)))
-        ways.append(_way(0, lattices, listed, order))
-    return CorePlan(
-        workshop, core, max_steps, SplitStepTable(tuple(ways)), None, {}, tuple(joinings), tuple(bought)
-    )
+    return CorePlan(workshop, core, max_steps, None, {}, tuple(joinings), tuple(bought))
 
 
 def _finish(
@@ -159,45 +158,51 @@ def _finish(
     return relax(stage, frame, [(as_pattern(pattern), n) for pattern, n in start], max_steps)
 
 
-def _way(
-    constant: int, lattices: Sequence[Lattice], listed: Mapping[str, Sequence[str]], order: Sequence[str]
-) -> StepWay:
-    parts = []
-    for lattice in lattices:
-        positions = [order.index(label) for label in lattice.frame.labels]
-        parts.append(step_part(lattice, positions, [listed[label] for label in lattice.frame.labels]))
-    return StepWay(constant, tuple(parts))
+def steps_over(plan: CorePlan, choices: Choices) -> Steps:
+    """Step counts over lists of choices (a part of those that the plan was made for).
+
+    Raises
+    ------
+    RouteError
+        Where the table would not fit into memory.
+    """
+    order = prepare_core(plan.core).open_labels
+    ways = []
+    for constant, lattices in plan.lattice_ways:
+        parts = []
+        for lattice in lattices:
+            positions = [order.index(label) for label in lattice.frame.labels]
+            parts.append(step_part(lattice, positions, [choices[p] for p in positions]))
+        ways.append(StepWay(constant, tuple(parts)))
+    if plan.whole is not None:
+        part = ways[0].parts[0]
+        return StepTable(part.class_of, part.counts)
+    return SplitStepTable(tuple(ways))
 
 
-def makeable(plan: CorePlan, choices: Choices) -> tuple[frozenset[str], ...]:
-    """For each open position the choices that stand on at least one analog with a route."""
-    found: list[set[str]] = [{HYDROGEN_SHORT} & set(own) for own in choices]
-    for way in plan.steps.ways:
-        if any(not (part.counts < 255).any() for part in way.parts):
+def makeable(plan: CorePlan) -> dict[str, frozenset[str]]:
+    """For each open position the groups that stand on at least one analog with a route; hydrogen always."""
+    found: dict[str, set[str]] = {label: {HYDROGEN_SHORT} for label in prepare_core(plan.core).open_labels}
+    for _, lattices in plan.lattice_ways:
+        reached = [lattice.reached()[0] for lattice in lattices]
+        if any(not len(rows) for rows in reached):
             continue
-        for part in way.parts:
-            for axis, position in enumerate(part.positions):
-                others = tuple(a for a in range(part.counts.ndim) if a != axis)
-                reached = (part.counts < 255).any(axis=others)
-                classes = part.class_of[axis]
-                found[position] |= {
-                    short for k, short in enumerate(choices[position]) if reached[classes[k]]
-                }
-    return tuple(frozenset(own) for own in found)
+        for lattice, rows in zip(lattices, reached, strict=True):
+            for axis, label in enumerate(lattice.frame.labels):
+                found[label] |= {lattice.frame.alphabet.shorts[k] for k in np.unique(rows[:, axis])}
+    return {label: frozenset(groups) for label, groups in found.items()}
 
 
-def count_makeable(plan: CorePlan) -> int:
-    """Number of patterns of the space that have a route (patterns, not molecules)."""
-    if len(plan.steps.ways) != 1:
-        return int(np.sum([_patterns_of(way) for way in plan.steps.ways]))
-    return _patterns_of(plan.steps.ways[0])
+def count_with_route(steps: Steps) -> int:
+    """Number of patterns that some way reaches, the ways counted apart (an upper bound where there are several)."""
+    return sum(_patterns_of(way) for way in steps.ways)
 
 
 def _patterns_of(way: StepWay) -> int:
     total = 1
     for part in way.parts:
-        reached = (part.counts < 255).astype(np.float64)
-        for classes in reversed(part.class_of):
-            reached = reached @ np.bincount(classes, minlength=reached.shape[-1]).astype(np.float64)
+        reached = (part.counts < NO_ROUTE).astype(np.float64)
+        for axis in reversed(range(reached.ndim)):
+            reached = reached @ np.bincount(part.class_of[axis], minlength=reached.shape[-1]).astype(np.float64)
         total *= int(reached)
     return total
