@@ -1,10 +1,11 @@
 """Where do the fitted constants stand, and how sure are they together?
 
-`libraries/acidity/constants.csv` holds one row per parameter and scaffold ("phenol", "aniline"): value, standard error,
-number of measurements behind it, prior, source. `covariance_SCAFFOLD.csv` holds the covariance of the parameters that
-need one position (as its Cholesky factor), given those that couple two; the errors of the latter add pair by pair. So the
-variance over a space is, like the pKa, a sum of one- and two-position look-ups. `spreads.csv` holds the misfit and the
-spreads of what is not fitted. All three are written by `python -m tuner.fitting fit`.
+`libraries/acidity/constants.csv` holds one row per parameter and scaffold ("phenol", "aniline"): value,
+standard error, number of measurements behind it, prior, source. `covariance_SCAFFOLD.csv` holds the
+covariance of the parameters that need one position (as its Cholesky factor), given those that couple two;
+the errors of the latter add pair by pair. So the variance over a space is, like the pKa, a sum of one- and
+two-position look-ups. `spreads.csv` holds the misfit and the spreads of what is not fitted. All three are
+written by `python -m tuner.fitting fit`.
 """
 
 from __future__ import annotations
@@ -24,7 +25,8 @@ from tuner.errors import LibraryError
 from tuner.library.folders import data_folder
 
 SCAFFOLDS = ("phenol", "aniline")
-"""Lone benzene rings with a fit of their own. Every other scaffold borrows the constants of one of the two."""
+"""Lone benzene rings with a fit of their own. Every other scaffold borrows the constants of one of the
+two."""
 
 FOLDER = "acidity"
 CONSTANTS_FILE, SPREADS_FILE = "constants.csv", "spreads.csv"
@@ -35,11 +37,13 @@ REFIT = "rewrite the folder with: python -m tuner.fitting fit --reference FOLDER
 class Misfit:
     """What a new compound adds to the error of the parameters, standard deviations in pKa units.
 
-    `base` for any compound (laboratories differ by this much), `ortho` per ortho group, `nitrogen` per group on the
+    `base` for any compound (laboratories differ by this much), `pair` per pair of ring groups, `ortho` per
+    ortho group in such a pair, `nitrogen` per group on the
     reporting nitrogen, `acceptors` times the product of the pulls of each pair of groups.
     """
 
     base: float
+    pair: float
     ortho: float
     nitrogen: float
     acceptors: float
@@ -126,7 +130,9 @@ def _load_once(folder: Path, stamps: tuple[int, ...]) -> Mapping[str, AcidityCon
     try:
         return {s: _scaffold(s, [r for r in table if r["scaffold"] == s], spreads, folder) for s in SCAFFOLDS}
     except (KeyError, ValueError) as error:
-        raise LibraryError(f"the fitted constants do not fit together ({error})", place=folder, remedy=REFIT) from None
+        raise LibraryError(
+            f"the fitted constants do not fit together ({error})", place=folder, remedy=REFIT
+        ) from None
 
 
 def _rows(path: Path) -> Iterator[dict[str, str]]:
@@ -159,14 +165,17 @@ def _scaffold(
             kin_share=spread["kin_share"],
             aniline=scaffold == "aniline",
         ),
-        misfit=Misfit(*(spread[f"misfit_{name}"] for name in ("base", "ortho", "nitrogen", "acceptors"))),
+        misfit=Misfit(
+            *(spread[f"misfit_{name}"] for name in ("base", "pair", "ortho", "nitrogen", "acceptors"))
+        ),
         rows={row["parameter"]: int(row["rows"]) for row in table},
         source={row["parameter"]: row["source"] for row in table},
     )
 
 
 def _covariance(path: Path, names: tuple[str, ...]) -> FloatArray:
-    """Covariance L L' from its factor L: one row per parameter, its name, then the numbers up to the diagonal."""
+    """Covariance L L' from its factor L: one row per parameter, its name, then the numbers up to the
+    diagonal."""
     size = len(names)
     matrix = np.zeros((size, size))
     with path.open(encoding="utf-8") as lines:

@@ -1,7 +1,7 @@
 """How do two groups act on each other?
 
-Every coupling is a product of one number of each group (see `nature`), times one parameter. So the couplings of all
-choices at two positions are outer products, and a single molecule uses the same table.
+Every coupling is a product of one number of each group (see `nature`), times one parameter. So the couplings
+of all choices at two positions are outer products, and a single molecule uses the same table.
 """
 
 from __future__ import annotations
@@ -23,8 +23,8 @@ AMINE_FREE, AMINE_ALKYL, AMINE_DIALKYL = 0, 1, 2
 class Coupling:
     """parameter * first-group number * second-group number.
 
-    `pair` is the relations of the two positions by initials (o, m, p, n); `beside` asks for neighbours on the ring;
-    `amine` restricts to one count of groups on the nitrogen (-1: any).
+    `pair` is the relations of the two positions by initials (o, m, p, n); `beside` asks for neighbours on
+    the ring; `amine` restricts to one count of groups on the nitrogen (-1: any).
     """
 
     parameter: str
@@ -55,13 +55,16 @@ COUPLINGS = (
     Coupling("alkyl_between_acceptors", "oo", "bulky_pull", "bulky_pull", amine=AMINE_ALKYL),
     Coupling("dialkyl_between", "oo", "bulky", "bulky", amine=AMINE_DIALKYL),
     Coupling("dialkyl_between_acceptors", "oo", "bulky_pull", "bulky_pull", amine=AMINE_DIALKYL),
+    Coupling("alkyl_acceptors_op", "op", "pull_ortho", "pull_para", amine=AMINE_ALKYL),
+    Coupling("dialkyl_acceptors_op", "op", "pull_ortho", "pull_para", amine=AMINE_DIALKYL),
     Coupling("dialkyl", "nn", "present", "present"),
     Coupling("dialkyl_longer", "nn", "longer", "present"),
     Coupling("dialkyl_longer", "nn", "present", "longer"),
     Coupling("dialkyl_large", "nn", "largest", "present"),
     Coupling("dialkyl_large", "nn", "present", "largest"),
 )
-"""Justified by residuals of several compounds each; see the table that `python -m tuner.fitting check` prints."""
+"""Justified by residuals of several compounds each; see the table that `python -m tuner.fitting check`
+prints."""
 
 COUPLING_PARAMETERS = tuple(dict.fromkeys(c.parameter for c in COUPLINGS))
 
@@ -115,7 +118,8 @@ def couple(
 def acceptor_product(first: Slot, ones: Sequence[Nature], second: Slot, twos: Sequence[Nature]) -> FloatArray:
     """Product of the pulls of the groups at two ring positions, shape (len(ones), len(twos)); 0 elsewhere.
 
-    The model is less sure where two strong acceptors act together; the misfit variance goes with this product squared.
+    The model is less sure where two strong acceptors act together; the misfit variance goes with this
+    product squared.
     """
     pulls = []
     for slot, natures in ((first, ones), (second, twos)):

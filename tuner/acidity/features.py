@@ -20,7 +20,6 @@ from tuner.acidity.nature import (
     SIZE,
     STRONG_ANIONS,
     field,
-    hydrocarbon_like,
     is_empty,
     kin,
     nature,
@@ -34,12 +33,24 @@ from tuner.structure.records import Slot
 Features = dict[str, float]
 
 ORTHO_FEATURES = (
-    "ortho_field", "ortho_resonance", "ortho_acceptor", "ortho_size", "ortho_large", "ortho_hbond_acceptor",
-    "ortho_hbond_donor", "ortho_charge", "ortho_anion",
-)  # fmt: skip
+    "ortho_field",
+    "ortho_resonance",
+    "ortho_acceptor",
+    "ortho_size",
+    "ortho_large",
+    "ortho_hbond_acceptor",
+    "ortho_hbond_donor",
+    "ortho_charge",
+    "ortho_anion",
+)
 NITROGEN_FEATURES = (
-    "nitrogen_group", "nitrogen_field", "nitrogen_unsaturated", "nitrogen_medium", "nitrogen_large", "nitrogen_aryl",
-)  # fmt: skip
+    "nitrogen_group",
+    "nitrogen_field",
+    "nitrogen_unsaturated",
+    "nitrogen_medium",
+    "nitrogen_large",
+    "nitrogen_aryl",
+)
 AMINE_FEATURES = tuple(
     f"{kind}_{what}"
     for kind in ("alkyl", "dialkyl")

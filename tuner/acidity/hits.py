@@ -6,16 +6,6 @@ import numpy as np
 
 from tuner.acidity.tables import FloatArray
 
-TAIL = 8.0
-"""Standard deviations beyond which a normal probability is 0 or 1 in double precision."""
-
-
-def _normal_cdf(z: FloatArray) -> FloatArray:
-    """Cumulative normal distribution, error below 1e-7 (SciPy's own function where it is at hand)."""
-    from scipy.special import ndtr
-
-    return np.asarray(ndtr(z), dtype=np.float64)
-
 
 def hit_probability(pka: FloatArray, sd: FloatArray, target: float, tolerance: float) -> FloatArray:
     """Probability that the true pKa' lies within target +- tolerance, for a normal predictive distribution.
@@ -37,6 +27,8 @@ def hit_probability(pka: FloatArray, sd: FloatArray, target: float, tolerance: f
     >>> hit_probability(np.array([7.0, 7.0]), np.array([0.1, 0.2]), 7.0, 0.2).round(3)
     array([0.954, 0.683])
     """
+    from scipy.special import ndtr
+
     middle = (target - np.asarray(pka, dtype=np.float64)) / sd
     half = tolerance / np.asarray(sd, dtype=np.float64)
-    return np.asarray(_normal_cdf(middle + half) - _normal_cdf(middle - half))
+    return np.asarray(ndtr(middle + half) - ndtr(middle - half), dtype=np.float64)

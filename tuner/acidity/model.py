@@ -1,8 +1,8 @@
 """What is the pKa of one pattern, or of a whole space of patterns, on any prepared core?
 
-Lone benzene rings ("phenol", "aniline") start from the fitted parent; what the core carries itself counts as groups,
-and the core's own measured parent shifts the sum. Every other scaffold starts from its own measured parent and borrows
-the constants of its series.
+Lone benzene rings ("phenol", "aniline") start from the fitted parent; what the core carries itself counts as
+groups, and the core's own measured parent shifts the sum. Every other scaffold starts from its own measured
+parent and borrows the constants of its series.
 """
 
 from __future__ import annotations
@@ -59,16 +59,24 @@ class AcidityModel:
         return evaluate_pattern(self.constants(prepared), prepared, standing, base=base, shift=shift)
 
     def tables(self, prepared: PreparedCore, choices: Sequence[Sequence[Substituent]]) -> SpaceTables:
-        """Look-up tables of a space; `choices` in the order of `prepared.open_labels`, in their acting forms."""
+        """Look-up tables of a space; `choices` in the order of `prepared.open_labels`, in their acting
+        forms."""
         base, shift, fixed = self.start(prepared)
         listed = dict(zip(prepared.open_labels, choices, strict=True))
         series = self._library.series[prepared.series]
         return build_space_tables(
-            self.constants(prepared), prepared, listed, fixed, base=base, shift=shift, bare_charge=series.acid_charge
+            self.constants(prepared),
+            prepared,
+            listed,
+            fixed,
+            base=base,
+            shift=shift,
+            bare_charge=series.acid_charge,
         )
 
     def start(self, prepared: PreparedCore) -> tuple[Base, CoreShift, dict[str, Substituent]]:
-        """Where the sum starts, what the core's measured parent adds, and the groups that the core carries."""
+        """Where the sum starts, what the core's measured parent adds, and the groups that the core
+        carries."""
         if prepared not in self._starts:
             self._starts[prepared] = self._work_out_start(prepared)
         return self._starts[prepared]
@@ -83,7 +91,9 @@ class AcidityModel:
             source = core.parent_pka_source or core.source
         if prepared.scaffold not in SCAFFOLDS:
             if not parent.known:
-                raise LibraryError(f"core '{prepared.name}' has no parent_pka", remedy="give value, sd and source")
+                raise LibraryError(
+                    f"core '{prepared.name}' has no parent_pka", remedy="give value, sd and source"
+                )
             return Base(parent, source), CoreShift(), {}
         fixed = {slot.label: self._resolve(slot.fixed) for slot in prepared.slots if slot.fixed}
         shift = core_shift(self._constants[prepared.scaffold], prepared, fixed, parent, source)
@@ -91,5 +101,6 @@ class AcidityModel:
 
 
 def without_shift(prepared: PreparedCore) -> PreparedCore:
-    """The same core under a name that no library holds, so that only the ring model speaks (for cross-validation)."""
+    """The same core under a name that no library holds, so that only the ring model speaks (for
+    cross-validation)."""
     return replace(prepared, name=f"{prepared.scaffold} ring")

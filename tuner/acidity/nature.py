@@ -1,8 +1,8 @@
 """What is a group like, as far as its neighbours and the reporting group can feel it?
 
-A `Nature` holds the few numbers of a group from which all couplings between two positions are made: how hard it pulls
-from each place, how large it is, whether it can be turned out of the ring plane. Groups that differ only far from the
-ring are `kin` and share most of what the fit learns about one of them.
+A `Nature` holds the few numbers of a group from which all couplings between two positions are made: how hard
+it pulls from each place, how large it is, whether it can be turned out of the ring plane. Groups that differ
+only far from the ring are `kin` and share most of what the fit learns about one of them.
 """
 
 from __future__ import annotations
@@ -18,9 +18,9 @@ SIZE = (0.0, 0.4, 0.7, 1.0)
 """Size of a group by its bulk class, in units of tert-butyl."""
 
 PRESS = (0.0, 1.0, 1.15, 1.3)
-"""How far a group turns its neighbour out of the ring plane, by its bulk class, in units of methyl. It saturates: two
-tert-butyl groups beside a nitro group cost hardly more of its resonance than two methyl groups (3,5-di-tert-butyl- and
-3,5-dimethyl-4-nitroaniline)."""
+"""How far a group turns its neighbour out of the ring plane, by its bulk class, in units of methyl. It
+saturates: two tert-butyl groups beside a nitro group cost hardly more of its resonance than two methyl groups
+(3,5-di-tert-butyl- and 3,5-dimethyl-4-nitroaniline)."""
 
 WEAK_FIELD = 0.2
 """Groups with a smaller field effect count as hydrocarbon-like: their ortho effects are steric."""

@@ -1,7 +1,7 @@
 """What is the pKa of one substitution pattern, how sure is it, and what is it made of?
 
-The molecule door of the acidity model. The same features, couplings and variances make the look-up tables of a whole
-space (`space_tables`), so both doors give the same number.
+The molecule door of the acidity model. The same features, couplings and variances make the look-up tables of
+a whole space (`space_tables`), so both doors give the same number.
 """
 
 from __future__ import annotations
@@ -26,30 +26,41 @@ LEAST_VARIANCE = 0.02**2
 """No calculated pKa is surer than this, whatever the algebra says (pKa units squared)."""
 
 COUPLING_WORDS = {
-    "acceptors_oo": "two ortho acceptors", "acceptors_om": "ortho and meta acceptors",
-    "acceptors_op": "ortho and para acceptors", "acceptors_mm": "two meta acceptors",
-    "acceptors_mp": "meta and para acceptors", "solvation": "two bulky ortho groups around the reporting group",
-    "crowding": "two ortho groups beside the reporting group", "buttressing": "neighbour presses on an ortho group",
+    "acceptors_oo": "two ortho acceptors",
+    "acceptors_om": "ortho and meta acceptors",
+    "acceptors_op": "ortho and para acceptors",
+    "acceptors_mm": "two meta acceptors",
+    "acceptors_mp": "meta and para acceptors",
+    "solvation": "two bulky ortho groups around the reporting group",
+    "crowding": "two ortho groups beside the reporting group",
+    "buttressing": "neighbour presses on an ortho group",
     "ortho_bulk_para_acceptor": "bulky ortho group and para acceptor",
     "ortho_large_para_acceptor": "large ortho group and para acceptor",
     "ortho_ether_para_acceptor": "ortho ether and para acceptor",
-    "twist_para": "para acceptor turned out of the plane", "twist_ortho": "ortho acceptor turned out of the plane",
-    "twist_ether_para": "para ether turned out of the plane", "twist_ether_ortho": "ortho ether turned out of the plane",
+    "twist_para": "para acceptor turned out of the plane",
+    "twist_ortho": "ortho acceptor turned out of the plane",
+    "twist_ether_para": "para ether turned out of the plane",
+    "twist_ether_ortho": "ortho ether turned out of the plane",
     "alkyl_between": "N-alkyl amine between two ortho groups",
     "alkyl_between_acceptors": "N-alkyl amine between two ortho acceptors",
     "dialkyl_between": "N,N-dialkyl amine between two ortho groups",
     "dialkyl_between_acceptors": "N,N-dialkyl amine between two ortho acceptors",
-    "dialkyl": "two groups on nitrogen", "dialkyl_longer": "two groups on nitrogen, longer than methyl",
+    "alkyl_acceptors_op": "ortho and para acceptors on an N-alkyl amine",
+    "dialkyl_acceptors_op": "ortho and para acceptors on an N,N-dialkyl amine",
+    "dialkyl": "two groups on nitrogen",
+    "dialkyl_longer": "two groups on nitrogen, longer than methyl",
     "dialkyl_large": "two groups on nitrogen, one large",
-}  # fmt: skip
+}
 
 
 @dataclass(frozen=True, slots=True)
 class Term:
     """One summand of a pKa.
 
-    kind : "parent", "group", "pair" or "core"; labels : the positions; value, sd in pKa units (sd of this summand
-    alone); sigma, rho : what the summand would be made of by the plain equation (NaN where it is not); source : keys.
+    kind : "parent", "group", "pair" or "core"; labels : the positions; value, sd in pKa units (sd of this
+    summand alone); sigma, rho : what the summand would be made of by the plain equation (NaN where it is
+    not);
+    source : keys.
     """
 
     kind: str
@@ -64,7 +75,8 @@ class Term:
 
 @dataclass(frozen=True, slots=True)
 class PatternPka:
-    """Thermodynamic pKa at 25 degC in water of one pattern, its standard error, and its summands (they add up)."""
+    """Thermodynamic pKa at 25 degC in water of one pattern, its standard error, and its summands (they add
+    up)."""
 
     pka25: float
     sd: float
@@ -107,10 +119,14 @@ def pair_effect(
     twos: Sequence[Substituent],
     amine: int,
 ) -> tuple[FloatArray, FloatArray]:
-    """Coupling (pKa units) and its variance between all choices at two positions, both (len(ones), len(twos))."""
+    """Coupling (pKa units) and its variance between all choices at two positions, both (len(ones),
+    len(twos))."""
     left, right = [nature(g) for g in ones], [nature(g) for g in twos]
     effect = np.zeros((len(left), len(right)))
     variance = (constants.misfit.acceptors * acceptor_product(first, left, second, right)) ** 2
+    variance += _pair_misfit(constants, first, second) * np.outer(
+        [n.present for n in left], [n.present for n in right]
+    )
     for parameter, table in couple(first, left, second, right, amine).items():
         effect += constants.couplings.get(parameter, 0.0) * table
         variance += (constants.coupling_sd.get(parameter, 0.0) * table) ** 2
@@ -122,10 +138,13 @@ def fixed_misfit(constants: AcidityConstants, amine: int) -> float:
     return constants.misfit.base**2 + constants.misfit.nitrogen**2 * amine
 
 
-def group_misfit(constants: AcidityConstants, slot: Slot, group: Substituent) -> float:
-    """Variance that a group adds for its place, pKa units squared."""
-    crowded = slot.relation == "ortho" and slot.ring == 0 and not is_empty(group)
-    return (constants.misfit.ortho * slot.transmission) ** 2 if crowded else 0.0
+def _pair_misfit(constants: AcidityConstants, first: Slot, second: Slot) -> float:
+    """Variance that two groups on the reporting ring add by not being quite additive, pKa units squared."""
+    ring = ("ortho", "meta", "para")
+    if first.ring != 0 or second.ring != 0 or first.relation not in ring or second.relation not in ring:
+        return 0.0
+    n_ortho = (first.relation == "ortho") + (second.relation == "ortho")
+    return constants.misfit.pair**2 + n_ortho * constants.misfit.ortho**2
 
 
 def base_features(base: Base) -> Features:
@@ -135,7 +154,8 @@ def base_features(base: Base) -> Features:
 
 @dataclass(frozen=True)
 class _Sum:
-    """A pattern taken apart: what stands where, and the arrays from which pKa, variance and terms are made."""
+    """A pattern taken apart: what stands where, and the arrays from which pKa, variance and terms are
+    made."""
 
     slots: tuple[Slot, ...]
     groups: tuple[Substituent, ...]
@@ -145,7 +165,9 @@ class _Sum:
     rest: float  # variance outside the covariance
 
 
-def _take_apart(constants: AcidityConstants, prepared: PreparedCore, groups: Mapping[str, Substituent], base: Base) -> _Sum:
+def _take_apart(
+    constants: AcidityConstants, prepared: PreparedCore, groups: Mapping[str, Substituent], base: Base
+) -> _Sum:
     unknown = sorted(set(groups) - {slot.label for slot in prepared.slots})
     if unknown:
         raise StructureError(
@@ -156,9 +178,10 @@ def _take_apart(constants: AcidityConstants, prepared: PreparedCore, groups: Map
     present = tuple(groups[s.label] for s in slots)
     amine = amine_count(prepared, groups)
     found = tuple(alone(s, g, constants.scales, amine) for s, g in zip(slots, present, strict=True))
-    vectors = np.array([constants.vector(base_features(base)), *(constants.vector(a.features) for a in found)])
+    vectors = np.array(
+        [constants.vector(base_features(base)), *(constants.vector(a.features) for a in found)]
+    )
     rest = fixed_misfit(constants, amine) + base.variance + sum(a.own_variance for a in found)
-    rest += sum(group_misfit(constants, s, g) for s, g in zip(slots, present, strict=True))
     pairs = []
     for (i, first), (j, second) in combinations(enumerate(slots), 2):
         effect, variance = pair_effect(constants, first, [present[i]], second, [present[j]], amine)
@@ -183,8 +206,8 @@ def evaluate_pattern(
     prepared : PreparedCore
         The core; open and fixed positions alike count by what `groups` puts there.
     groups : mapping label -> Substituent
-        The acting form at each position; left-out positions bear hydrogen. Fixed groups of the core must be in it
-        (`with_fixed`).
+        The acting form at each position; left-out positions bear hydrogen. Fixed groups of the core must be
+        in it (`with_fixed`).
     base : Base
         Where the sum starts; the fitted parent where not given.
     shift : CoreShift
@@ -219,7 +242,9 @@ def _terms(constants: AcidityConstants, parts: _Sum, base: Base, shift: CoreShif
     else:
         title, value, sd, source = "core", base.own.value, base.own.sd, base.own_source
     terms = [Term("parent", (), title, value, sd, float("nan"), float("nan"), source)]
-    for slot, group, found, vector in zip(parts.slots, parts.groups, parts.found, parts.vectors[1:], strict=True):
+    for slot, group, found, vector in zip(
+        parts.slots, parts.groups, parts.found, parts.vectors[1:], strict=True
+    ):
         sd = sqrt(float(vector @ covariance @ vector) + found.own_variance)
         terms.append(_group_term(constants, slot, group, found, float(vector @ constants.mean), sd, rho))
     for i, j, effect, variance in parts.pairs:
@@ -227,16 +252,33 @@ def _terms(constants: AcidityConstants, parts: _Sum, base: Base, shift: CoreShif
             labels = (parts.slots[i].label, parts.slots[j].label)
             title = _pair_title(constants, parts, i, j)
             source = constants.source.get("acceptors_oo", "")
-            terms.append(Term("pair", labels, title, effect, sqrt(variance), float("nan"), float("nan"), source))
+            terms.append(
+                Term("pair", labels, title, effect, sqrt(variance), float("nan"), float("nan"), source)
+            )
     if shift.value != 0.0:
         terms.append(
-            Term("core", (), "measured parent of this core", shift.value, 0.0, float("nan"), float("nan"), shift.source)
+            Term(
+                "core",
+                (),
+                "measured parent of this core",
+                shift.value,
+                0.0,
+                float("nan"),
+                float("nan"),
+                shift.source,
+            )
         )
     return tuple(terms)
 
 
 def _group_term(
-    constants: AcidityConstants, slot: Slot, group: Substituent, found: Alone, value: float, sd: float, rho: float
+    constants: AcidityConstants,
+    slot: Slot,
+    group: Substituent,
+    found: Alone,
+    value: float,
+    sd: float,
+    rho: float,
 ) -> Term:
     names = [name for name in found.features if ":" in name]
     fitted = next((constants.source[n] for n in names if n in constants.source), "")
@@ -256,12 +298,16 @@ def _pair_title(constants: AcidityConstants, parts: _Sum, i: int, j: int) -> str
 
 
 def core_shift(
-    constants: AcidityConstants, prepared: PreparedCore, fixed: Mapping[str, Substituent], measured: Value, source: str
+    constants: AcidityConstants,
+    prepared: PreparedCore,
+    fixed: Mapping[str, Substituent],
+    measured: Value,
+    source: str,
 ) -> CoreShift:
     """How far a core's measured parent moves the model for all its analogs.
 
-    shift = w * (measured - model), w = s^2 / (s^2 + sd^2) with s the model's own error for the bare core. The bare
-    scaffold itself (nothing fixed) is not moved: its parent is in the fit.
+    shift = w * (measured - model), w = s^2 / (s^2 + sd^2) with s the model's own error for the bare
+    core. The bare scaffold itself (nothing fixed) is not moved: its parent is in the fit.
 
     Parameters
     ----------

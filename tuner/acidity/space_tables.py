@@ -1,7 +1,7 @@
 """What are pKa and variance over a whole substitution space, as look-up tables?
 
-The space door of the acidity model: everything that `pattern.evaluate_pattern` adds up for one molecule, worked out
-once for every choice at every open position and every pair of choices.
+The space door of the acidity model: everything that `pattern.evaluate_pattern` adds up for one molecule,
+worked out once for every choice at every open position and every pair of choices.
 """
 
 from __future__ import annotations
@@ -16,7 +16,7 @@ from tuner.acidity.constants import AcidityConstants
 from tuner.acidity.couplings import AMINE_DIALKYL
 from tuner.acidity.features import alone
 from tuner.acidity.nature import is_empty
-from tuner.acidity.pattern import Base, CoreShift, base_features, fixed_misfit, group_misfit, pair_effect
+from tuner.acidity.pattern import Base, CoreShift, base_features, fixed_misfit, pair_effect
 from tuner.acidity.tables import FloatArray, PairwiseSum
 from tuner.errors import StructureError
 from tuner.library.records import Substituent
@@ -45,7 +45,7 @@ class _Place:
 
 def _place(constants: AcidityConstants, slot: Slot, groups: Sequence[Substituent], amine: int) -> _Place:
     found = [alone(slot, g, constants.scales, amine) for g in groups]
-    rest = [a.own_variance + group_misfit(constants, slot, g) for a, g in zip(found, groups, strict=True)]
+    rest = [a.own_variance for a in found]
     vectors = np.array([constants.vector(a.features) for a in found])
     return _Place(slot, tuple(groups), vectors, np.array(rest), np.array([float(g.charge) for g in groups]))
 
@@ -58,18 +58,24 @@ def space_amine_count(
     Raises
     ------
     StructureError
-        Where hydrogen and groups are mixed at one position on the nitrogen: the ring groups then act differently from
-        analog to analog.
+        Where hydrogen and groups are mixed at one position on the nitrogen: the ring groups then act
+        differently from analog to analog.
     """
     count = 0
     for slot in prepared.slots:
         if slot.relation != "nitrogen":
             continue
-        there = list(choices[slot.label]) if slot.label in choices else [fixed[slot.label]] if slot.label in fixed else []
+        there = (
+            list(choices[slot.label])
+            if slot.label in choices
+            else [fixed[slot.label]]
+            if slot.label in fixed
+            else []
+        )
         empty = {is_empty(g) for g in there}
         if len(empty) > 1:
             raise StructureError(
-                f"core '{prepared.name}' mixes hydrogen and groups at {slot.label}, on the reporting nitrogen",
+                f"core '{prepared.name}' mixes hydrogen and groups at {slot.label} on its nitrogen",
                 remedy="write two cores, one with hydrogen there and one that always bears a group",
             )
         count += empty == {False}
@@ -110,13 +116,17 @@ def build_space_tables(
     """
     start, moved = base or Base(None), shift or CoreShift()
     amine = space_amine_count(prepared, choices, fixed)
-    places = [_place(constants, prepared.slot(label), choices[label], amine) for label in prepared.open_labels]
+    places = [
+        _place(constants, prepared.slot(label), choices[label], amine) for label in prepared.open_labels
+    ]
     standing = [
         _place(constants, slot, [fixed[slot.label]], amine)
         for slot in prepared.slots
         if slot.label in fixed and slot.label not in choices
     ]
-    still = constants.vector(base_features(start)) + sum((p.vectors[0] for p in standing), np.zeros(len(constants.names)))
+    still = constants.vector(base_features(start)) + sum(
+        (p.vectors[0] for p in standing), np.zeros(len(constants.names))
+    )
     pka = float(still @ constants.mean) + (start.own.value if start.own else 0.0) + moved.value
     variance = float(still @ constants.covariance @ still) + fixed_misfit(constants, amine) + start.variance
     variance += sum(float(p.rest[0]) for p in standing) - moved.variance_taken
@@ -125,7 +135,7 @@ def build_space_tables(
         pka, variance = pka + float(effect[0, 0]), variance + float(doubt[0, 0])
     alone_pka, alone_variance = _singles(constants, places, standing, still, amine)
     pair_pka, pair_variance = _doubles(constants, places, amine)
-    charge = bare_charge + sum(float(p.charge[0]) for p in standing)
+    charge = float(bare_charge) + sum(float(p.charge[0]) for p in standing)
     return SpaceTables(
         PairwiseSum(pka, alone_pka, pair_pka),
         PairwiseSum(variance, alone_variance, pair_variance),

@@ -1,8 +1,9 @@
 """Refit and check the acidity model from the command line.
 
     python -m tuner.fitting fit --reference FOLDER     fit on all tables, write libraries/acidity
-    python -m tuner.fitting fit --in-project --out F   fit on the project's own measured values, write folder F
-    python -m tuner.fitting check --reference FOLDER   leave out one compound at a time, print the table of errors
+    python -m tuner.fitting fit --in-project --out F   fit on the project's own measured values, write folder
+    F python -m tuner.fitting check --reference FOLDER   leave out one compound at a time, print the table of
+    errors
 
 `--keep-spreads` leaves the spreads as shipped instead of setting them by marginal likelihood.
 """
@@ -26,17 +27,22 @@ IN_PROJECT_SOURCE = "fit:in-project"
 
 
 def _arguments(words: Sequence[str]) -> argparse.Namespace:
-    parser = argparse.ArgumentParser(prog="python -m tuner.fitting", description="refit and check the acidity model")
+    parser = argparse.ArgumentParser(
+        prog="python -m tuner.fitting", description="refit and check the acidity model"
+    )
     parser.add_argument("task", choices=("fit", "check"))
     parser.add_argument("--reference", type=Path, help="folder with phenols.csv, anilines.csv, ionisable.csv")
-    parser.add_argument("--in-project", action="store_true", help="use the project's own measured values only")
+    parser.add_argument(
+        "--in-project", action="store_true", help="use the project's own measured values only"
+    )
     parser.add_argument("--out", type=Path, help="folder to write (default: libraries/acidity)")
     parser.add_argument("--keep-spreads", action="store_true")
     return parser.parse_args(words)
 
 
 def make_fit(reference: Path | None, *, tune: bool) -> tuple[Fit, list[str]]:
-    """A fit on a folder of reference tables, or on the project's own values where none is given; and what was left out."""
+    """A fit on a folder of reference tables, or on the project's own values where none is given; and what
+    was left out."""
     library = load_library()
     left_out: list[str] = []
     if reference is None:
@@ -50,12 +56,17 @@ def make_fit(reference: Path | None, *, tune: bool) -> tuple[Fit, list[str]]:
 def print_check(made: Fit) -> None:
     """The table of errors on compounds left out, and the worst of them with their weight in the fit."""
     found = leave_out(made)
-    print(f"{'set':<24}{'n':>5}{'mean, best 95 %':>18}{'median':>9}{'within 0.3':>12}{'90 % interval holds':>21}")
+    heads = f"{'set':<24}{'n':>5}{'mean, best 95 %':>18}{'median':>9}{'within 0.3':>12}"
+    print(f"{heads}{'90 % interval holds':>21}")
     for s in scores(found):
-        print(f"{s.title:<24}{s.n:>5}{s.mean_best:>18.3f}{s.median:>9.3f}{s.within:>12.1%}{s.coverage:>21.1%}")
+        print(
+            f"{s.title:<24}{s.n:>5}{s.mean_best:>18.3f}{s.median:>9.3f}{s.within:>12.1%}{s.coverage:>21.1%}"
+        )
     weight = {id(row): w for row, w in zip(made.design.rows, made.weights, strict=True)}
     for scaffold in ("phenol", "aniline"):
-        worst = sorted((f for f in found if f.row.scaffold == scaffold), key=lambda f: -abs(f.error))[:WORST_SHOWN]
+        worst = sorted((f for f in found if f.row.scaffold == scaffold), key=lambda f: -abs(f.error))[
+            :WORST_SHOWN
+        ]
         print(f"\nworst {scaffold}s: measured, predicted, stated error, weight in the fit")
         for f in worst:
             print(f"{f.row.pka25:8.2f}{f.predicted:8.2f} +-{f.sd:5.2f}{weight[id(f.row)]:6.2f}  {f.row.name}")
@@ -73,7 +84,10 @@ def main(words: Sequence[str]) -> int:
             print_check(made)
             return 0
         if told.in_project and told.out is None:
-            print("say --out FOLDER: a fit on few values must not overwrite the shipped constants", file=sys.stderr)
+            print(
+                "say --out FOLDER: a fit on few values must not overwrite the shipped constants",
+                file=sys.stderr,
+            )
             return 2
         folder = told.out or data_folder() / "acidity"
         write_constants(made, folder, IN_PROJECT_SOURCE if told.in_project else FIT_SOURCE)

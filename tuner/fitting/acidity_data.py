@@ -1,8 +1,9 @@
 """Which measurements does the acidity model learn from, as patterns on a phenol or an aniline?
 
-Three kinds of rows: measured compounds (a folder of reference tables, or the project's own `measured_pka.csv`), single
-steps of molecules with several ionising groups (`microconstants.csv` says which step measures what), and values written
-down as remembered (`remembered.csv` and the ortho columns of `substituents.csv`), which count with the doubt they state.
+Three kinds of rows: measured compounds (a folder of reference tables, or the project's own
+`measured_pka.csv`), single steps of molecules with several ionising groups (`microconstants.csv` says which
+step measures what), and values written down as remembered (`remembered.csv` and the ortho columns of
+`substituents.csv`), which count with the doubt they state.
 """
 
 from __future__ import annotations
@@ -22,7 +23,15 @@ from tuner.prediction.estimate import Estimator
 from tuner.structure.dissect import dissect
 from tuner.structure.records import Slot
 
-RELATIONS = {"2": "ortho", "3": "meta", "4": "para", "5": "meta", "6": "ortho", "N": "nitrogen", "N'": "nitrogen"}
+RELATIONS = {
+    "2": "ortho",
+    "3": "meta",
+    "4": "para",
+    "5": "meta",
+    "6": "ortho",
+    "N": "nitrogen",
+    "N'": "nitrogen",
+}
 NEIGHBOURS = {"2": ("3",), "3": ("2", "4"), "4": ("3", "5"), "5": ("4", "6"), "6": ("5",)}
 MIRROR = {"2": "6", "3": "5", "4": "4", "5": "3", "6": "2"}
 
@@ -75,7 +84,14 @@ def read_rows(path: Path) -> Iterator[dict[str, str]]:
 
 
 def measured_row(
-    library: Library, estimator: Estimator, name: str, smiles: str, pka: float, celsius: float, n: int, scaffold: str = ""
+    library: Library,
+    estimator: Estimator,
+    name: str,
+    smiles: str,
+    pka: float,
+    celsius: float,
+    n: int,
+    scaffold: str = "",
 ) -> Row | None:
     """A measured phenol or aniline as a row; None where it is no lone phenol or aniline ring."""
     try:
@@ -101,8 +117,8 @@ def reference_rows(library: Library, folder: Path) -> tuple[list[Row], list[str]
     for file, scaffold in (("phenols.csv", "phenol"), ("anilines.csv", "aniline")):
         for line in read_rows(folder / file):
             row = measured_row(
-                library, estimator, line["name"], line["smiles"], float(line["pka"]), float(line["t_celsius"]),
-                int(line["n"]), scaffold,
+                library, estimator, line["name"], line["smiles"], float(line["pka"]),
+                float(line["t_celsius"]), int(line["n"]), scaffold,
             )  # fmt: skip
             rows.append(row) if row is not None else left_out.append(line["name"])
     return rows, left_out
@@ -112,18 +128,23 @@ def project_rows(library: Library) -> list[Row]:
     """The project's own measured values."""
     estimator = Estimator(library)
     found = [
-        measured_row(library, estimator, m.name, m.smiles, m.pka, m.temperature_c, 2) for m in library.measured
+        measured_row(library, estimator, m.name, m.smiles, m.pka, m.temperature_c, 2)
+        for m in library.measured
     ]
     return [row for row in found if row is not None]
 
 
 def pattern(library: Library, text: str) -> dict[str, Substituent]:
     """Groups written as "2:NO2 4:Me"."""
-    return {label: library.find_substituent(short) for label, _, short in (part.partition(":") for part in text.split())}
+    return {
+        label: library.find_substituent(short)
+        for label, _, short in (part.partition(":") for part in text.split())
+    }
 
 
 def step_rows(library: Library, folder: Path) -> list[Row]:
-    """Steps of molecules with several groups that measure one site (values from `ionisable.csv` of the folder)."""
+    """Steps of molecules with several groups that measure one site (values from `ionisable.csv` of the
+    folder)."""
     values = {(r["smiles"], r["pka_type"]): r for r in read_rows(folder / "ionisable.csv")}
     rows = []
     for line in read_rows(data_folder() / "acidity" / "microconstants.csv"):
@@ -134,7 +155,16 @@ def step_rows(library: Library, folder: Path) -> list[Row]:
         pka = to_25_c(float(value["pka"]), series, float(value["t_celsius"])) + float(line["statistical"])
         name = f"{value['name']} {line['pka_type']}"
         rows.append(
-            Row(name, line["scaffold"], pattern(library, line["groups"]), pka, 0.05, int(value["n"]), STEP, line["smiles"])
+            Row(
+                name,
+                line["scaffold"],
+                pattern(library, line["groups"]),
+                pka,
+                0.05,
+                int(value["n"]),
+                STEP,
+                line["smiles"],
+            )
         )
     return rows
 
@@ -142,11 +172,12 @@ def step_rows(library: Library, folder: Path) -> list[Row]:
 def remembered_rows(library: Library, measured: Iterable[Row] = ()) -> list[Row]:
     """Values as remembered: the table of compounds, then the ortho constants of groups it does not list.
 
-    Compounds in `measured` are left out where both agree: a remembered value is no second witness for the print that it
-    comes from. Where they contradict each other both stay, and the fit weighs them.
+    Compounds in `measured` are left out where both agree: a remembered value is no second witness for the
+    print that it comes from. Where they contradict each other both stay, and the fit weighs them.
     """
     rows = [
-        Row(line["groups"] or line["scaffold"], line["scaffold"], pattern(library, line["groups"]), float(line["pka"]),
+        Row(line["groups"] or line["scaffold"], line["scaffold"], pattern(library, line["groups"]),
+        float(line["pka"]),
             float(line["pka_sd"]), 1, REMEMBERED)
         for line in read_rows(data_folder() / "acidity" / "remembered.csv")
     ]  # fmt: skip

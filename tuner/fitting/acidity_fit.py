@@ -1,9 +1,10 @@
 """How are the constants of the acidity model estimated?
 
-A Bayesian linear model. Every row is a pattern; its features come from the very functions that predict. Parameters have
-normal priors (`priors`); the scatter is Student's t with few degrees of freedom, done by iterated reweighting, so that a
-misprint loses its weight by itself; the spreads are set by marginal likelihood. Deviations of one group in both series
-are correlated, so that a group measured on anilines alone is also better known on phenols.
+A Bayesian linear model. Every row is a pattern; its features come from the very functions that predict.
+Parameters have normal priors (`priors`); the scatter is Student's t with few degrees of freedom, done by
+iterated reweighting, so that a misprint loses its weight by itself; the spreads are set by marginal
+likelihood. Deviations of one group in both series are correlated, so that a group measured on anilines alone
+is also better known on phenols.
 """
 
 from __future__ import annotations
@@ -19,7 +20,7 @@ from tuner.acidity.couplings import AMINE_DIALKYL, COUPLING_PARAMETERS, acceptor
 from tuner.acidity.features import KIN_MARK, SHARED_PARAMETERS, Features, alone
 from tuner.acidity.nature import is_empty, kin, nature, para_value
 from tuner.acidity.tables import FloatArray
-from tuner.fitting.acidity_data import REMEMBERED, RING_SLOTS, Row
+from tuner.fitting.acidity_data import MIRROR, REMEMBERED, RING_SLOTS, Row
 from tuner.fitting.priors import SERIES_PRIORS, Spreads, decode, encode, group_scales, log_prior, prior_of
 from tuner.library.records import Substituent
 
@@ -30,15 +31,17 @@ REWEIGHTINGS = 8
 SHARED_COLUMNS = ("meta", "para")
 FIT_SOURCE = "fit:acidity"
 EITHER_WAY = {"phenol": "aniline", "aniline": "phenol"}
-REPEATED_NOISE = 0.5
-"""Variance of a median of several determinations against that of a single one."""
+NOISE_SHARE = (1.0, 1.0, 0.5, 0.25, 0.2)
+"""Variance of the median of 0, 1, 2, 3, 4 or more determinations against that of a single one (laboratories
+share errors)."""
 
 
 @dataclass(frozen=True)
 class Design:
     """Rows as arrays.
 
-    x : (n_rows, n_parameters); names : (scaffold, parameter) per column; groups : group of a group constant or None.
+    x : (n_rows, n_parameters); names : (scaffold, parameter) per column; groups : group of a group constant
+    or None.
     """
 
     rows: tuple[Row, ...]
@@ -47,9 +50,10 @@ class Design:
     x: FloatArray
     y: FloatArray
     phenol: FloatArray
-    repeated: FloatArray
+    noise_share: FloatArray
     doubt: FloatArray
-    n_ortho: FloatArray
+    pairs: FloatArray  # pairs of ring groups
+    ortho_pairs: FloatArray  # ortho groups in them, counted pair by pair
     on_nitrogen: FloatArray
     acceptors: FloatArray  # sum over pairs of (product of pulls)^2
 
@@ -57,7 +61,11 @@ class Design:
 def row_features(row: Row, spreads: Spreads) -> Features:
     """Features of one pattern, by the functions that predict."""
     scales = group_scales(row.scaffold, spreads)
-    placed = [(RING_SLOTS[label], row.groups[label]) for label in sorted(row.groups) if not is_empty(row.groups[label])]
+    placed = [
+        (RING_SLOTS[label], row.groups[label])
+        for label in sorted(row.groups)
+        if not is_empty(row.groups[label])
+    ]
     amine = min(sum(slot.relation == "nitrogen" for slot, _ in placed), AMINE_DIALKYL)
     total: Features = {"base": 1.0}
     parts = [alone(slot, group, scales, amine).features for slot, group in placed]
@@ -72,9 +80,12 @@ def row_features(row: Row, spreads: Spreads) -> Features:
 
 def _pulls(row: Row) -> float:
     """Sum over pairs of groups of the squared product of their pulls."""
-    placed = [(RING_SLOTS[label], group) for label, group in sorted(row.groups.items()) if not is_empty(group)]
+    placed = [
+        (RING_SLOTS[label], group) for label, group in sorted(row.groups.items()) if not is_empty(group)
+    ]
     products = [
-        float(acceptor_product(a, [nature(g)], b, [nature(h)])[0, 0]) for (a, g), (b, h) in combinations(placed, 2)
+        float(acceptor_product(a, [nature(g)], b, [nature(h)])[0, 0])
+        for (a, g), (b, h) in combinations(placed, 2)
     ]
     return float(sum(p * p for p in products))
 
@@ -96,6 +107,9 @@ def make_design(rows: Sequence[Row]) -> Design:
     for i, (row, features) in enumerate(zip(rows, found, strict=True)):
         for name, weight in features.items():
             x[i, place[row.scaffold, name]] = weight
+    rings = [
+        [label for label, g in row.groups.items() if label in MIRROR and not is_empty(g)] for row in rows
+    ]
     groups = [by_name.get(name.partition(":")[2]) if ":" in name else None for _, name in names]
     return Design(
         rows=tuple(rows),
@@ -104,9 +118,10 @@ def make_design(rows: Sequence[Row]) -> Design:
         x=x,
         y=np.array([row.pka25 for row in rows]),
         phenol=np.array([float(row.scaffold == "phenol") for row in rows]),
-        repeated=np.array([float(row.determinations > 1) for row in rows]),
+        noise_share=np.array([NOISE_SHARE[min(row.determinations, len(NOISE_SHARE) - 1)] for row in rows]),
         doubt=np.array([row.sd for row in rows]),
-        n_ortho=np.array([float(sum(label in "26" for label in row.groups)) for row in rows]),
+        pairs=np.array([len(ring) * (len(ring) - 1) / 2.0 for ring in rings]),
+        ortho_pairs=np.array([sum(label in "26" for label in ring) * (len(ring) - 1.0) for ring in rings]),
         on_nitrogen=np.array([float(sum(label.startswith("N") for label in row.groups)) for row in rows]),
         acceptors=np.array([_pulls(row) for row in rows]),
     )
@@ -131,7 +146,12 @@ def priors(design: Design, spreads: Spreads) -> tuple[FloatArray, FloatArray]:
     place = {key: k for k, key in enumerate(design.names)}
     for (scaffold, name), k in place.items():
         other = place.get(("aniline", name))
-        if scaffold == "phenol" and other is not None and name.split(":")[0] in SHARED_COLUMNS and ":" in name:
+        if (
+            scaffold == "phenol"
+            and other is not None
+            and name.split(":")[0] in SHARED_COLUMNS
+            and ":" in name
+        ):
             covariance[k, other] = covariance[other, k] = spreads.shared * sd[k] * sd[other]
     return mean, covariance
 
@@ -139,8 +159,12 @@ def priors(design: Design, spreads: Spreads) -> tuple[FloatArray, FloatArray]:
 def noise(design: Design, spreads: Spreads) -> FloatArray:
     """Variance of each row about the model, before reweighting."""
     single = np.where(design.phenol > 0, spreads.noise_phenol, spreads.noise_aniline) ** 2
-    variance = single * np.where(design.repeated > 0, REPEATED_NOISE, 1.0)
-    variance = variance + spreads.misfit_ortho**2 * design.n_ortho + spreads.misfit_nitrogen**2 * design.on_nitrogen
+    variance = single * design.noise_share + spreads.misfit_pair**2 * design.pairs
+    variance = (
+        variance
+        + spreads.misfit_ortho**2 * design.ortho_pairs
+        + spreads.misfit_nitrogen**2 * design.on_nitrogen
+    )
     variance = variance + spreads.misfit_acceptors**2 * design.acceptors
     return np.asarray(variance + (spreads.doubt * design.doubt) ** 2)
 
@@ -154,7 +178,9 @@ class Posterior:
     log_evidence: float
 
 
-def posterior(design: Design, spreads: Spreads, weights: FloatArray, use: FloatArray | None = None) -> Posterior:
+def posterior(
+    design: Design, spreads: Spreads, weights: FloatArray, use: FloatArray | None = None
+) -> Posterior:
     """Normal posterior for given weights; `use` picks rows (boolean), all where not given."""
     mean, covariance = priors(design, spreads)
     keep = np.ones(len(design.y), dtype=bool) if use is None else np.asarray(use, dtype=bool)
@@ -169,7 +195,8 @@ def posterior(design: Design, spreads: Spreads, weights: FloatArray, use: FloatA
 
 
 def robust_weights(design: Design, spreads: Spreads) -> FloatArray:
-    """Weights of the rows under Student's t, by iterated reweighting; 1.25 for a perfect row, near 0 for a misprint."""
+    """Weights of the rows under Student's t, by iterated reweighting; 1.25 for a perfect row, near 0 for a
+    misprint."""
     weights = np.ones(len(design.y))
     variance = noise(design, spreads)
     for _ in range(REWEIGHTINGS):
@@ -240,7 +267,8 @@ def published_of(name: str, group: Substituent | None) -> float:
 
 
 def _constants(made: Fit, scaffold: str, result: Posterior) -> AcidityConstants:
-    """One scaffold. The covariance of one-position parameters is taken given the couplings, whose errors stay apart."""
+    """One scaffold. The covariance of one-position parameters is taken given the couplings, whose errors
+    stay apart."""
     design, spreads = made.design, made.spreads
     own = [k for k, (of, _) in enumerate(design.names) if of == scaffold]
     single = [k for k in own if design.names[k][1] not in COUPLING_PARAMETERS]
@@ -251,7 +279,9 @@ def _constants(made: Fit, scaffold: str, result: Posterior) -> AcidityConstants:
     given = inside - across @ np.linalg.solve(between, across.T) if double else inside
     names = tuple(design.names[k][1] for k in single)
     published = {
-        design.names[k][1]: published_of(design.names[k][1], design.groups[k]) for k in single if ":" in design.names[k][1]
+        design.names[k][1]: published_of(design.names[k][1], design.groups[k])
+        for k in single
+        if ":" in design.names[k][1]
     }
     counted = (design.x[:, own] != 0.0) & (np.array([r.kind != REMEMBERED for r in design.rows])[:, None])
     base_noise = spreads.noise_phenol if scaffold == "phenol" else spreads.noise_aniline
@@ -263,7 +293,13 @@ def _constants(made: Fit, scaffold: str, result: Posterior) -> AcidityConstants:
         couplings={design.names[k][1]: float(result.mean[k]) for k in double},
         coupling_sd={design.names[k][1]: float(np.sqrt(result.covariance[k, k])) for k in double},
         scales=group_scales(scaffold, spreads, published),
-        misfit=Misfit(base_noise, spreads.misfit_ortho, spreads.misfit_nitrogen, spreads.misfit_acceptors),
+        misfit=Misfit(
+            base_noise,
+            spreads.misfit_pair,
+            spreads.misfit_ortho,
+            spreads.misfit_nitrogen,
+            spreads.misfit_acceptors,
+        ),
         rows={design.names[k][1]: int(counted[:, i].sum()) for i, k in enumerate(own)},
         source={design.names[k][1]: FIT_SOURCE for k in own},
     )
@@ -276,10 +312,29 @@ def spread_rows(made: Fit) -> list[tuple[str, str, float]]:
         scales = group_scales(scaffold, made.spreads)
         constants = constants_of(made)[scaffold].misfit
         found += [(scaffold, "rho", SERIES_PRIORS[scaffold]["rho"][0])]
-        for name in ("error_meta", "error_para", "ortho_sd", "ortho_polar_factor", "nitrogen_sd", "kin_share"):
+        for name in (
+            "error_meta",
+            "error_para",
+            "ortho_sd",
+            "ortho_polar_factor",
+            "nitrogen_sd",
+            "kin_share",
+        ):
             found.append((scaffold, name, float(getattr(scales, name))))
-        found += [(scaffold, f"misfit_{f.name}", float(getattr(constants, f.name))) for f in fields(constants)]
+        found += [
+            (scaffold, f"misfit_{f.name}", float(getattr(constants, f.name))) for f in fields(constants)
+        ]
     return found
 
 
-__all__ = ["KIN_MARK", "Design", "Fit", "Posterior", "constants_of", "fit", "make_design", "posterior", "spread_rows"]
+__all__ = [
+    "KIN_MARK",
+    "Design",
+    "Fit",
+    "Posterior",
+    "constants_of",
+    "fit",
+    "make_design",
+    "posterior",
+    "spread_rows",
+]

@@ -1,7 +1,7 @@
 """How wrong is the acidity model on compounds that it has not seen, and does it know?
 
-Each compound is left out with everything else that is known of it (remembered values too), the parameters are estimated
-anew from the rest, and the compound is predicted through the molecule door, error and all.
+Each compound is left out with everything else that is known of it (remembered values too), the parameters
+are estimated anew from the rest, and the compound is predicted through the molecule door, error and all.
 """
 
 from __future__ import annotations
@@ -10,6 +10,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from tuner.acidity.constants import SCAFFOLDS
 from tuner.acidity.pattern import evaluate_pattern
@@ -24,7 +25,9 @@ WITHIN = 0.3
 NINETY_PERCENT = 1.645
 
 RING = {
-    scaffold: PreparedCore(f"{scaffold} ring", scaffold, series, tuple(RING_SLOTS.values()), (), ((),), 0.0, 0)
+    scaffold: PreparedCore(
+        f"{scaffold} ring", scaffold, series, tuple(RING_SLOTS.values()), (), ((),), 0.0, 0
+    )
     for scaffold, series in (("phenol", "phenol"), ("aniline", "anilinium"))
 }
 
@@ -63,7 +66,7 @@ def leave_out(made: Fit) -> list[LeftOut]:
     variance = noise(design, made.spreads) / made.weights
     spread = design.x @ covariance
     total = spread @ design.x.T + np.diag(variance)
-    inverse = np.linalg.inv(total)
+    inverse = np.asarray(np.linalg.inv(total), dtype=np.float64)
     miss = design.y - design.x @ mean
     found = []
     for i, row in enumerate(design.rows):
@@ -79,11 +82,13 @@ def leave_out(made: Fit) -> list[LeftOut]:
     return found
 
 
-def _without(inverse: FloatArray, out: FloatArray) -> FloatArray:
+def _without(inverse: FloatArray, out: NDArray[np.bool_]) -> FloatArray:
     """Inverse of a matrix without the rows and columns in `out`, from the inverse of the whole."""
     keep = ~out
     corner = inverse[np.ix_(keep, out)]
-    return np.asarray(inverse[np.ix_(keep, keep)] - corner @ np.linalg.solve(inverse[np.ix_(out, out)], corner.T))
+    return np.asarray(
+        inverse[np.ix_(keep, keep)] - corner @ np.linalg.solve(inverse[np.ix_(out, out)], corner.T)
+    )
 
 
 def score(title: str, found: Sequence[LeftOut]) -> Score:
@@ -92,7 +97,12 @@ def score(title: str, found: Sequence[LeftOut]) -> Score:
     best = miss[: round(BEST_SHARE * len(miss))]
     inside = [abs(f.error) <= NINETY_PERCENT * f.sd for f in found]
     return Score(
-        title, len(miss), float(best.mean()), float(np.median(miss)), float(np.mean(miss <= WITHIN)), float(np.mean(inside))
+        title,
+        len(miss),
+        float(best.mean()),
+        float(np.median(miss)),
+        float(np.mean(miss <= WITHIN)),
+        float(np.mean(inside)),
     )
 
 

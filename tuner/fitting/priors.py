@@ -1,8 +1,9 @@
 """What is known about the parameters of the acidity model before any measurement is looked at?
 
-Values are pKa units per unit of the feature. Means come from the published equations (Perrin, Dempsey & Serjeant 1981,
-as remembered) and from chemical sense; standard deviations are wide. Group constants start at the published value with
-its stated error (times a factor found by the fit). `Spreads` are the few numbers that marginal likelihood sets.
+Values are pKa units per unit of the feature. Means come from the published equations (Perrin, Dempsey &
+Serjeant 1981, as remembered) and from chemical sense; standard deviations are wide. Group constants start at
+the published value with its stated error (times a factor found by the fit). `Spreads` are the few numbers
+that marginal likelihood sets.
 """
 
 from __future__ import annotations
@@ -24,63 +25,93 @@ SERIES_PRIORS = {
 """para_donor: donors give less than sigma_para to a phenolate (4-methoxyphenol 10.1, not 10.6)."""
 
 COMMON_PRIORS = {
-    "ortho_field": (2.5, 1.0), "ortho_resonance": (1.0, 1.0), "ortho_acceptor": (0.5, 1.0), "ortho_size": (0.0, 0.7),
-    "ortho_large": (0.0, 0.7), "ortho_hbond_acceptor": (0.0, 0.8), "ortho_hbond_donor": (0.0, 0.5),
-    "ortho_charge": (0.0, 1.5), "ortho_anion": (3.0, 2.0), "nitrogen_group": (0.3, 0.3), "nitrogen_field": (8.0, 5.0),
+    "ortho_field": (2.5, 1.0),
+    "ortho_resonance": (1.0, 1.0),
+    "ortho_acceptor": (0.5, 1.0),
+    "ortho_size": (0.0, 0.7),
+    "ortho_large": (0.0, 0.7),
+    "ortho_hbond_acceptor": (0.0, 0.8),
+    "ortho_hbond_donor": (0.0, 0.5),
+    "ortho_charge": (0.0, 1.5),
+    "ortho_anion": (3.0, 2.0),
+    "nitrogen_group": (0.3, 0.3),
+    "nitrogen_field": (8.0, 5.0),
     "nitrogen_unsaturated": (-0.7, 0.5),
-    "nitrogen_medium": (0.6, 0.5), "nitrogen_large": (2.0, 1.0), "nitrogen_aryl": (-3.5, 2.0),
-    "crowding": (0.0, 0.3), "buttressing": (0.0, 0.3), "alkyl_rho": (0.29, 0.15), "dialkyl_rho": (0.58, 0.15),
-}  # fmt: skip
+    "nitrogen_medium": (0.6, 0.5),
+    "nitrogen_large": (2.0, 1.0),
+    "nitrogen_aryl": (-3.5, 2.0),
+    "crowding": (0.0, 0.3),
+    "buttressing": (0.0, 0.3),
+    "alkyl_rho": (0.29, 0.15),
+    "dialkyl_rho": (0.58, 0.15),
+}
 """alkyl_rho, dialkyl_rho: rho rises from 2.88 (primary) to 3.46 (N,N-dialkyl)."""
 
 GROUP_PRIORS = {("aniline", "para:NO"): (4.0, 1.0)}
-"""4-Nitrosoanilines take up the proton at the nitroso oxygen, so the group weakens them far less than sigma says."""
+"""4-Nitrosoanilines take up the proton at the nitroso oxygen, so the group weakens them far less than sigma
+says."""
 
 COUPLING_SD = 1.0
 
 
 @dataclass(frozen=True, slots=True)
 class Spreads:
-    """Spreads that the fit sets by marginal likelihood. pKa units unless a factor or a share (see `GroupScales`).
+    """Spreads that the fit sets by marginal likelihood. pKa units unless a factor or a share (see
+    `GroupScales`).
 
-    `shared` is the correlation between a group's deviations in the two series; `noise_*` the scatter of single
-    determinations; `misfit_*` what ortho groups, N-groups and pairs of acceptors add (see `constants.Misfit`);
-    `doubt` the true over the stated doubt of remembered values.
+    `shared` is the correlation between a group's deviations in the two series; `noise_*` the scatter of
+    single determinations; `misfit_*` what each pair of groups (more with an ortho group in it), N-groups and
+    pairs of acceptors add (see `constants.Misfit`); `doubt` the true over the stated doubt of remembered
+    values.
     """
 
-    error_meta: float = 0.94
-    error_para: float = 1.07
-    ortho_phenol: float = 0.26
-    ortho_aniline: float = 0.22
-    ortho_polar_factor: float = 2.1
+    error_meta: float = 1.08
+    error_para: float = 1.12
+    ortho_phenol: float = 0.29
+    ortho_aniline: float = 0.244
+    ortho_polar_factor: float = 1.9
     nitrogen: float = 0.36
-    kin_share: float = 0.86
-    shared: float = 0.71
-    noise_phenol: float = 0.11
-    noise_aniline: float = 0.083
-    misfit_ortho: float = 0.061
-    misfit_nitrogen: float = 0.13
-    misfit_acceptors: float = 0.22
-    doubt: float = 0.45
+    kin_share: float = 0.88
+    shared: float = 0.73
+    noise_phenol: float = 0.112
+    noise_aniline: float = 0.087
+    misfit_pair: float = 0.049
+    misfit_ortho: float = 0.044
+    misfit_nitrogen: float = 0.112
+    misfit_acceptors: float = 0.207
+    doubt: float = 0.43
 
 
 BOUNDED = ("kin_share", "shared")
 """Shares between 0 and 1; fitted on a logit scale, everything else on a log scale."""
 
 SPREAD_PRIORS = {
-    "error_meta": (0.0, 0.4), "error_para": (0.0, 0.4), "ortho_phenol": (np.log(0.2), 0.5),
-    "ortho_aniline": (np.log(0.2), 0.5), "ortho_polar_factor": (np.log(2.0), 0.5), "nitrogen": (np.log(0.3), 0.5),
-    "kin_share": (0.8, 0.7), "shared": (0.0, 1.0), "noise_phenol": (np.log(0.06), 0.4),
-    "noise_aniline": (np.log(0.06), 0.4), "misfit_ortho": (np.log(0.05), 0.6), "misfit_nitrogen": (np.log(0.07), 0.6),
-    "misfit_acceptors": (np.log(0.1), 0.6), "doubt": (0.0, 0.3),
-}  # fmt: skip
+    "error_meta": (0.0, 0.4),
+    "error_para": (0.0, 0.4),
+    "ortho_phenol": (np.log(0.2), 0.5),
+    "ortho_aniline": (np.log(0.2), 0.5),
+    "ortho_polar_factor": (np.log(2.0), 0.5),
+    "nitrogen": (np.log(0.3), 0.5),
+    "kin_share": (0.8, 0.7),
+    "shared": (0.0, 1.0),
+    "noise_phenol": (np.log(0.06), 0.4),
+    "noise_aniline": (np.log(0.06), 0.4),
+    "misfit_pair": (np.log(0.06), 0.4),
+    "misfit_ortho": (np.log(0.05), 0.6),
+    "misfit_nitrogen": (np.log(0.07), 0.6),
+    "misfit_acceptors": (np.log(0.1), 0.6),
+    "doubt": (0.0, 0.3),
+}
 """Mean and standard deviation on the fitted (log or logit) scale."""
 
 
 def encode(spreads: Spreads) -> FloatArray:
     """Spreads on the scale on which they are fitted (dimensionless)."""
     values = [getattr(spreads, f.name) for f in fields(Spreads)]
-    scaled = [np.log(v / (1 - v)) if f.name in BOUNDED else np.log(v) for f, v in zip(fields(Spreads), values, strict=True)]
+    scaled = [
+        np.log(v / (1 - v)) if f.name in BOUNDED else np.log(v)
+        for f, v in zip(fields(Spreads), values, strict=True)
+    ]
     return np.array(scaled)
 
 
@@ -96,9 +127,11 @@ def decode(scaled: FloatArray) -> Spreads:
 def log_prior(scaled: FloatArray) -> float:
     """Log density (dimensionless) of the priors of the spreads, up to a constant."""
     return float(
-        sum(-0.5 * ((x - SPREAD_PRIORS[f.name][0]) / SPREAD_PRIORS[f.name][1]) ** 2
-            for f, x in zip(fields(Spreads), scaled, strict=True))
-    )  # fmt: skip
+        sum(
+            -0.5 * ((x - SPREAD_PRIORS[f.name][0]) / SPREAD_PRIORS[f.name][1]) ** 2
+            for f, x in zip(fields(Spreads), scaled, strict=True)
+        )
+    )
 
 
 class OpenScales(GroupScales):

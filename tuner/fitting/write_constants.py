@@ -1,6 +1,7 @@
 """How do the fitted constants get into `libraries/acidity`?
 
-Every file is written to a neighbour first and then renamed, so that a run that breaks off leaves the old state.
+Every file is written to a neighbour first and then renamed, so that a run that breaks off leaves the old
+state.
 """
 
 from __future__ import annotations
@@ -15,23 +16,27 @@ from tuner.acidity.constants import CONSTANTS_FILE, SCAFFOLDS, SPREADS_FILE, cov
 from tuner.fitting.acidity_fit import Fit, constants_of, priors, spread_rows
 
 CONSTANTS_HEAD = """\
-# Fitted constants of the acidity model. One row per parameter and scaffold; written by python -m tuner.fitting fit.
-# pKa = sum of feature * value. base: parent; rho: sensitivity; column:GROUP: what a group adds beyond rho * published
-# sigma (or beyond the regression, for ortho and nitrogen), in pKa units; column:~KIN: what kin groups have in common;
-# the rest are regressions and couplings (tuner/acidity/features.py, couplings.py).
+# Fitted constants of the acidity model. One row per parameter and scaffold; written by python -m
+# tuner.fitting fit. pKa = sum of feature * value. base: parent; rho: sensitivity; column:GROUP: what a group
+# adds beyond rho * published sigma (or beyond the regression, for ortho and nitrogen), in pKa units;
+# column:~KIN: what kin groups have in common; the rest are regressions and couplings
+# (tuner/acidity/features.py, couplings.py).
 # rows: measurements behind the value; 0 means that it rests on the prior and on correlated parameters.
 # published: the published sigma that a group constant was fitted on. Covariances stand in covariance_*.csv.
 """
 COVARIANCE_HEAD = """\
-# Cholesky factor L (lower triangle, pKa units) of the covariance L L' of the one-position parameters, given the couplings.
-# The factor and not the covariance itself, since L L' has no negative variance however L is rounded.
+# Cholesky factor L (lower triangle, pKa units) of the covariance L L' of the one-position parameters, given
+# the couplings. The factor and not the covariance itself, since L L' has no negative variance however L is
+# rounded.
 """
 SMALLEST_SHOWN = 2e-5
 JITTER = 1e-9
-"""Added to the variances so that rounding of the fit itself cannot spoil the factorisation (pKa units squared)."""
+"""Added to the variances so that rounding of the fit itself cannot spoil the factorisation (pKa units
+squared)."""
 SPREADS_HEAD = """\
-# Spreads of the acidity model: how far constants that are not in the fit stray, and what a new compound adds to the error.
-# Standard deviations in pKa units, except factors (error_*, *_factor), shares and rho (pKa per sigma).
+# Spreads of the acidity model: how far constants that are not in the fit stray, and what a new compound adds
+# to the error. Standard deviations in pKa units, except factors (error_*, *_factor), shares and rho (pKa per
+# sigma).
 """
 
 
@@ -74,7 +79,8 @@ def write_constants(made: Fit, folder: Path, source: str) -> None:
         factor = np.linalg.cholesky(constants.covariance + np.diag(np.full(len(constants.names), JITTER)))
         factor[np.abs(factor) < SMALLEST_SHOWN] = 0.0
         rows = [
-            ",".join([_quoted(name), *(f"{v:.4g}" for v in factor[k, : k + 1])]) for k, name in enumerate(constants.names)
+            ",".join([_quoted(name), *(f"{v:.4g}" for v in factor[k, : k + 1])])
+            for k, name in enumerate(constants.names)
         ]
         _write(folder / covariance_file(scaffold), COVARIANCE_HEAD, rows)
     _write(folder / CONSTANTS_FILE, CONSTANTS_HEAD, lines)
