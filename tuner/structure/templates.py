@@ -136,7 +136,7 @@ def ring_places(core: Core) -> tuple[RingPlaces, ...]:
     >>> core = Core("x", "4-nitrophenol", "Oc1c([*:2])cc([N+](=O)[O-])cc1[*:6]", "phenol")
     >>> ring, = ring_places(core)
     >>> ring.distance["2", REPORTING_PLACE], ring.distance["2", "6"], sorted(ring.carried.values())
-    (1, 2, ['NO2'])
+    (1, 2, ['H', 'H', 'NO2'])
     """
     form = form_of(core)
     at: dict[int, list[str]] = {}
