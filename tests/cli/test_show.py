@@ -100,6 +100,7 @@ def test_reactions_are_listed_and_told_with_their_source(tuner: Tuner) -> None:
 
 def test_a_reaction_of_ones_own_is_shown(tuner: Tuner) -> None:
     Path("mine").mkdir()
-    rule = '[reaction."my step"]\ntitle = "mine"\nkind = "exchange"\ngives = { "CN" = "" }\nsource = "Vogel1989"\n'
+    rule = '[reaction."my step"]\ntitle = "mine"\nkind = "exchange"\ngives = { "CN" = "" }\n'
+    rule += 'source = "Vogel1989"\n'
     Path("mine/reactions.toml").write_text(rule, encoding="utf-8")
     assert "my step" in tuner("show", "reactions", "--overlay", "mine").out
