@@ -17,7 +17,7 @@ from tuner.library.records import HYDROGEN_SHORT, Core, Substituent
 from tuner.screening.energetic import energetic_weights
 from tuner.search.anchors import bound_form
 from tuner.search.counting import count_patterns
-from tuner.search.palette import NITROGEN_FAMILIES, acting_form, is_named, palette
+from tuner.search.palette import acting_form, is_named, may_stand_at, palette
 from tuner.search.space import Choice, CoreSpace, CountLimit, DesignSpace
 from tuner.structure.cores import prepare_core
 from tuner.structure.records import PreparedCore
@@ -131,9 +131,7 @@ def _fits(
     group: Substituent, prepared: PreparedCore, label: str, supplied: Mapping[str, frozenset[str]] | None
 ) -> bool:
     """Whether a group may stand at a position."""
-    if group.short == HYDROGEN_SHORT:
-        return True
-    if prepared.slot(label).relation == "nitrogen" and group.family not in NITROGEN_FAMILIES:
+    if not may_stand_at(group, prepared, label):
         return False
     return supplied is None or group.short in supplied.get(label, frozenset())
 

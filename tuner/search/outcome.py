@@ -128,7 +128,7 @@ def _candidate(rooms: Rooms, standings: Standings, row: int) -> Candidate:
     space = rooms.space.spaces[one.key[0]]
     shown = one.measured if isfinite(one.measured) else one.pka
     low, high = working_range_by_eye(np.array(shown))
-    route = rooms.route(one.smiles, space, one.key[1:])
+    route = rooms.route(space, one.key[1:])
     on_the_way = () if route is None else tuple(c for step in route.steps for c in step.cautions)
     return Candidate(
         rank=row + 1,

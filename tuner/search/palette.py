@@ -9,6 +9,7 @@ from tuner.library import Library
 from tuner.library.records import HYDROGEN_SHORT, Substituent
 from tuner.screening.groups import flags_of_group
 from tuner.structure.molecule import has_match
+from tuner.structure.records import PreparedCore
 
 EXCLUDE = "exclude"
 """What a brief says of a flag that no listed analog may raise."""
@@ -46,6 +47,12 @@ def is_named(group: Substituent, words: Iterable[str]) -> bool:
         elif group.short == word:
             return True
     return False
+
+
+def may_stand_at(group: Substituent, prepared: PreparedCore, label: str) -> bool:
+    """Whether a position takes such a group at all, whatever the shelf holds."""
+    on_nitrogen = prepared.slot(label).relation == "nitrogen"
+    return not on_nitrogen or group.short == HYDROGEN_SHORT or group.family in NITROGEN_FAMILIES
 
 
 def is_free_form(group: Substituent, library: Library) -> bool:

@@ -257,6 +257,6 @@ class Rooms:
         """Minimum step counts over one space."""
         return self.shelf.step_table(space)
 
-    def route(self, smiles: str, space: CoreSpace, row: Sequence[int]) -> Route | None:
+    def route(self, space: CoreSpace, row: Sequence[int]) -> Route | None:
         """A shortest way to one analog, or None."""
-        return self.shelf.route(smiles, space, row)
+        return self.shelf.route(space, row)
