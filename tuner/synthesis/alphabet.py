@@ -49,6 +49,12 @@ def leading_to(stage: Stage, wanted: Iterable[str]) -> frozenset[str]:
         found = more
 
 
-def alphabet(groups: Iterable[str]) -> Alphabet:
-    """An alphabet of these groups, hydrogen first, then by name."""
+ENERGETIC_TAGS = frozenset(("azide", "diazonium", "nitrate ester", "nitramine", "peroxide"))
+"""Hazard tags of groups that are never made, not even on the way."""
+
+
+def alphabet(stage: Stage, groups: Iterable[str]) -> Alphabet:
+    """An alphabet of these groups, hydrogen first, then by name; energetic groups are left out."""
+    tabulated = stage.workshop.library.substituents
+    groups = {g for g in groups if not set(tabulated[g].hazards) & ENERGETIC_TAGS}
     return Alphabet((HYDROGEN_SHORT, *sorted(set(groups) - {HYDROGEN_SHORT})))

@@ -30,7 +30,7 @@ def core_lattice(workshop: Workshop, core: Core, wanted: Iterable[str], max_step
     stage = Stage(workshop, core)
     prepared = prepare_core(core)
     nitrogen = tuple(prepared.slot(label).relation == "nitrogen" for label in prepared.open_labels)
-    frame = Frame(prepared.open_labels, nitrogen, alphabet(leading_to(stage, wanted)))
+    frame = Frame(prepared.open_labels, nitrogen, alphabet(stage, leading_to(stage, wanted)))
     start = [(dict(pattern), 0) for pattern in workshop.bought(core)]
     return relax(stage, frame, start, max_steps)
 

@@ -142,7 +142,7 @@ def relax(
             found = [frontier[other] for other in layers if other != layer]
             if len(frontier[layer]):
                 for _, _, after in maker.outcomes(frame.rows(frontier[layer]), layer):
-                    found.append(np.unique(frame.keys(after)))
+                    found.append(np.unique(frame.keys(after[maker.harmless(after)])))
             if any(len(keys) for keys in found):
                 seen[layer].new_ones(np.concatenate(found), level + 1)
     return Lattice(stage, frame, tuple(seen[k].keys for k in layers), tuple(seen[k].counts for k in layers))

@@ -20,6 +20,10 @@ from tuner.synthesis.alphabet import ACCEPTORS, Alphabet
 from tuner.synthesis.ring import Code, RingView
 from tuner.synthesis.setting import FREE, Stage
 
+NITRO = "NO2"
+MOST_NITRO = 3
+"""Three ring nitro groups make a compound energetic; such patterns are neither targets nor intermediates."""
+
 Rows = NDArray[np.int16]
 Mask = NDArray[np.bool_]
 
@@ -60,6 +64,15 @@ class MoveMaker:
                 holds = self.alphabet.holds
                 found.append(RuleTable(rule, layers, takes, given, holds(rule.takes), holds(rule.spoils)))
         return tuple(found)
+
+    def harmless(self, rows: Rows) -> Mask:
+        """False for patterns that must not be made, not even on the way: three or more nitro groups on the rings."""
+        nitro = self.alphabet.index.get(NITRO, -1)
+        return np.asarray((rows == nitro).sum(axis=1) + self._nitro_carried < MOST_NITRO)
+
+    @cached_property
+    def _nitro_carried(self) -> int:
+        return sum(kind == NITRO for ring in ring_places(self.stage.core) for kind in ring.carried.values())
 
     def outcomes(self, rows: Rows, layer: int) -> Iterator[tuple[Reaction, Rows, Rows]]:
         """(rule, rows it acts on, rows it gives), pairwise, for all rules of the layer."""

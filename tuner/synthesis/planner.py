@@ -101,7 +101,7 @@ def _in_one_piece(
     labels = tuple(listed)
     stage = Stage(workshop, core)
     groups = leading_to(stage, {short for own in listed.values() for short in own})
-    frame = Frame(labels, _nitrogen(core, labels), alphabet(groups))
+    frame = Frame(labels, _nitrogen(core, labels), alphabet(stage, groups))
     wanted = dict.fromkeys(labels, groups)
     ways, starts = [], {}
     for joining in halved:
@@ -154,7 +154,7 @@ def _finish(
 ) -> Lattice:
     """What can still be done on the finished dye at some of its positions."""
     groups = frozenset().union(*(wanted[label] for label in labels))
-    frame = Frame(tuple(labels), _nitrogen(stage.core, labels), alphabet(groups))
+    frame = Frame(tuple(labels), _nitrogen(stage.core, labels), alphabet(stage, groups))
     return relax(stage, frame, [(as_pattern(pattern), n) for pattern, n in start], max_steps)
 
 
