@@ -200,12 +200,19 @@ def capped(core: Core, groups: Mapping[str, str], cap: str) -> str:
 
 
 def filled(template: str, groups: Mapping[str, str], labels: Mapping[int, str] | None = None) -> str:
-    """A template with groups on its positions, hydrogen elsewhere; canonical SMILES."""
-    text = template
-    for number in {int(n) for n in re.findall(r"\[\*:(\d+)\]", template)}:
+    """A template with groups on its positions, hydrogen elsewhere; canonical SMILES.
+
+    >>> filled("[*:4]C(=O)CC(=O)OCC", {"4": "*C(F)(F)F"})
+    'CCOC(=O)CC(=O)C(F)(F)F'
+    """
+    bare = flat(parse(template))
+    root = next(a.GetIdx() for a in bare.GetAtoms() if a.GetAtomicNum() > 0)
+    # written from an atom of its own on, a template never begins with an open position
+    text = str(Chem.MolToSmiles(bare, rootedAtAtom=root))
+    for number in sorted({int(n) for n in re.findall(r"\[\*:(\d+)\]", text)}):
         label = (labels or {}).get(number, str(number))
         branch = branch_of(groups.get(label, HYDROGEN_GROUP)).removeprefix("-")
-        text = text.replace(f"[*:{number}]", f"{branch}" if branch else "[H]")
+        text = text.replace(f"[*:{number}]", branch or "[H]")
     mol = Chem.MolFromSmiles(text)
     if mol is None:
         raise StructureError(f"'{short(text)}' cannot exist", place="template", remedy="check the template")
