@@ -72,6 +72,7 @@ class Nature:
     pull_meta: float
     pull_para: float
     resonance_pull: float  # para only: sigma_para_minus of acceptors by resonance
+    field_pull: float  # field effect of groups that neither accept nor donate much by resonance (halogens)
     hydrocarbon: float  # size where hydrocarbon-like
     large_hydrocarbon: float  # 1 where hydrocarbon-like and of the largest bulk class
     ether: float  # 1 for donors with lone pairs in the ring plane
@@ -129,7 +130,7 @@ def ether_like(group: Substituent) -> bool:
 def nature(group: Substituent) -> Nature:
     """The coupling numbers of one group."""
     if is_empty(group):
-        return Nature(*([0.0] * 16))
+        return Nature(*([0.0] * 17))
     inductive = max(field(group), 0.0)
     acceptor = group.para_acceptor and group.sigma_para_minus.known
     conjugated = through_resonance(group)
@@ -143,6 +144,7 @@ def nature(group: Substituent) -> Nature:
         pull_meta=max(group.sigma_meta.value, 0.0),
         pull_para=group.sigma_para_minus.value if acceptor else inductive,
         resonance_pull=max(group.sigma_para_minus.value, 0.0) if acceptor else 0.0,
+        field_pull=0.0 if acceptor or ether else inductive,
         hydrocarbon=size if smooth else 0.0,
         large_hydrocarbon=float(smooth and group.bulk == len(SIZE) - 1),
         ether=ether,

@@ -65,20 +65,20 @@ class Spreads:
     values.
     """
 
-    error_meta: float = 1.08
-    error_para: float = 1.12
-    ortho_phenol: float = 0.29
-    ortho_aniline: float = 0.244
-    ortho_polar_factor: float = 1.9
-    nitrogen: float = 0.36
+    error_meta: float = 1.06
+    error_para: float = 1.09
+    ortho_phenol: float = 0.288
+    ortho_aniline: float = 0.24
+    ortho_polar_factor: float = 1.92
+    nitrogen: float = 0.37
     kin_share: float = 0.88
     shared: float = 0.73
-    noise_phenol: float = 0.112
+    noise_phenol: float = 0.114
     noise_aniline: float = 0.087
-    misfit_pair: float = 0.049
-    misfit_ortho: float = 0.044
-    misfit_nitrogen: float = 0.112
-    misfit_acceptors: float = 0.207
+    misfit_pair: float = 0.053
+    misfit_ortho: float = 0.039
+    misfit_nitrogen: float = 0.104
+    misfit_acceptors: float = 0.103
     doubt: float = 0.43
 
 
