@@ -55,6 +55,7 @@ class Shown:
     measured: str
     cautions: tuple[str, ...]
     letters: str
+    own_cautions: tuple[str, ...]
     notes: tuple[str, ...]
     others: tuple[tuple[str, str], ...]
     starting: tuple[str, ...]
@@ -133,6 +134,8 @@ def _shown(
     """A candidate in the words and digits of the page."""
     c = candidate
     steps = told_steps(c.route)
+    on_the_way = {text for step in steps for text in step.cautions}
+    step_notes = {step.note for step in steps}
     return Shown(
         rank=c.rank,
         analog=c.analog,
@@ -153,15 +156,16 @@ def _shown(
         stability=digits.percent(c.stability) if isfinite(c.stability) else "",
         measured=f"{c.measured_pka:.2f} ({c.measured_source})" if isfinite(c.measured_pka) else "",
         cautions=c.cautions,
+        own_cautions=tuple(text for text in c.cautions if text not in on_the_way),
         letters=" ".join(letters.get(caution, "") for caution in c.cautions),
-        notes=c.notes,
+        notes=tuple(n for n in c.notes if c.route is None or n not in c.route.notes),
         others=tuple(
             (t.target.name or target_in_words(t.target), digits.percent(t.probability))
             for t in c.other_targets
         ),
         starting=c.route.starting_materials if c.route else (),
         route=steps,
-        route_notes=c.route.notes if c.route else (),
+        route_notes=tuple(n for n in c.route.notes if n not in step_notes) if c.route else (),
         has_route=c.route is not None,
         makes=tuple(_drawing(step.product, exhibits, markup) for step in steps),
     )
