@@ -13,6 +13,7 @@ from tuner.search.evolve import Evolution, search_evolutionary
 from tuner.search.finalists import Finalist, Judge
 from tuner.search.found import Found
 from tuner.search.hypervolume import Box
+from tuner.search.known import known_analogs
 from tuner.search.molecules import smiles_of
 from tuner.search.rows import Analogs, join, order_keys
 from tuner.search.stages import Stages
@@ -60,12 +61,12 @@ def gather(
     wanted = rows * DIVERSE_POOL if brief.ranking.diverse else rows
     n = min(MOST_POOLED, wanted + 50)
     evolved = no_rows = 0
-    extra: list[Analogs] = []
+    extra = [known_analogs(judge.rooms.space.spaces, spaces, goal, judge.rooms.measured)]
     while True:
         found = search(n)
-        if not extra and _needs_evolution(brief):
+        if len(extra) == 1 and _needs_evolution(brief):
             extra.append(_evolved(brief, spaces, goal, judge, found, stages))
-            evolved = len(extra[0])
+            evolved = len(extra[1])
         pool = _distinct(join((found.best, found.front, *extra)))
         finalists = _judged(judge, pool, stages)
         everything = len(found.best) < n

@@ -16,9 +16,9 @@ from tuner.acidity.medium import MediumEffect, medium_effect, require_valid, to_
 from tuner.acidity.model import AcidityModel
 from tuner.acidity.tables import CoreTables, PairwiseSum
 from tuner.brief.records import Brief, Medium
-from tuner.errors import TunerError
+from tuner.errors import Notes, TunerError
 from tuner.library import Library
-from tuner.library.records import HYDROGEN_SHORT, Series
+from tuner.library.records import HYDROGEN_SHORT, MeasuredPka, Series
 from tuner.prediction.records import Prediction
 from tuner.screening.records import Flags
 from tuner.screening.screen import require_known_flags, screen
@@ -49,6 +49,7 @@ class Rooms:
         require_known_flags([name for name, _ in brief.limits.flags], library)
         self.brief = brief
         self.library = library
+        self.faults = Notes()
         self._tables: dict[int, CoreTables] = {}
         self._doors: dict[Medium, MoleculeDoor] = {}
 
@@ -170,14 +171,24 @@ class Rooms:
         except TunerError as fault:  # a molecule that the other room cannot treat stops no run
             return Prediction(smiles, notes=(fault.text,))
 
+    @cached_property
+    def own_measured(self) -> tuple[MeasuredPka, ...]:
+        """The user's own measured values."""
+        from tuner.structure.own_library import read_checked_measured
+
+        return tuple(read_checked_measured(self.brief.measured)) if self.brief.measured is not None else ()
+
+    @property
+    def measured(self) -> tuple[MeasuredPka, ...]:
+        """All measured values, the user's own last."""
+        return (*self.library.measured, *self.own_measured)
+
     def _open_door(self, medium: Medium) -> MoleculeDoor:
         """The molecule door for one medium."""
         from tuner.prediction.acidity_face import shipped_model
         from tuner.prediction.door import MoleculeDoor
-        from tuner.structure.own_library import read_checked_measured
 
-        own = read_checked_measured(self.brief.measured) if self.brief.measured is not None else ()
-        return MoleculeDoor(self.library, shipped_model(self.library), medium, own)
+        return MoleculeDoor(self.library, shipped_model(self.library), medium, self.own_measured)
 
     def measured_in_medium(self, prediction: Prediction, rank: int) -> float:
         """A measured value brought to 25 degC, then to the target's medium as the prediction is (pKa
@@ -258,5 +269,9 @@ class Rooms:
         return self.shelf.step_table(space)
 
     def route(self, space: CoreSpace, row: Sequence[int]) -> Route | None:
-        """A shortest way to one analog, or None."""
-        return self.shelf.route(space, row)
+        """A shortest way to one analog, or None; a fault of the planner becomes a note of the run."""
+        try:
+            return self.shelf.route(space, row)
+        except TunerError as fault:
+            self.faults.add(f"a route could not be written: {fault.text}")
+            return None

@@ -174,7 +174,7 @@ class _Run:
         return (
             ("patterns", patterns),
             ("analogs, each molecule once, within the counting limits", analogs),
-            *self.rooms.shelf.route_counts(self.spaces, self.goal.max_steps),
+            *((what, n) for what, n in self.rooms.shelf.route_counts(self.spaces, self.goal.max_steps) if n),
             ("looked at as molecules", self.pooled.pooled),
             *removed_lines(self.judge.removed),
             ("listed", listed),
@@ -185,7 +185,7 @@ class _Run:
         from tuner.acidity.medium import medium_notes
 
         brief = self.rooms.brief
-        notes = [*self.pooled.notes, *medium_notes(brief.target.medium)]
+        notes = [*self.pooled.notes, *medium_notes(brief.target.medium), *self.rooms.faults.lines()]
         if user is not None and user.note():
             notes.append(user.note())
         return tuple(dict.fromkeys(notes))
