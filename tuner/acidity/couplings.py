@@ -49,6 +49,8 @@ COUPLINGS = (
     Coupling("ortho_large_para_acceptor", "op", "large_hydrocarbon", "resonance_pull"),
     Coupling("ortho_ether_para_acceptor", "op", "ether", "resonance_pull"),
     Coupling("ortho_field_para_acceptor", "op", "field_pull", "resonance_pull"),
+    Coupling("ortho_bulk_para_field", "op", "hydrocarbon", "field_pull"),
+    Coupling("neighbours_para_field", "mp", "bulky", "field_pull", beside=True),
     Coupling("twist_para", "mp", "press", "turned_acceptor", beside=True),
     Coupling("twist_ortho", "om", "turned_acceptor", "press", beside=True),
     Coupling("twist_ether_para", "mp", "press", "turned_ether", beside=True),

@@ -34,6 +34,8 @@ COUPLING_WORDS = {
     "solvation": "hindered solvation between two ortho groups",
     "two_large": "two large ortho groups",
     "ortho_field_para_acceptor": "ortho halogen and para acceptor",
+    "ortho_bulk_para_field": "ortho hydrocarbon and para halogen",
+    "neighbours_para_field": "para halogen beside a meta group",
     "crowding": "two ortho groups beside the reporting group",
     "buttressing": "neighbour presses on an ortho group",
     "ortho_bulk_para_acceptor": "bulky ortho group and para acceptor",
