@@ -6,7 +6,7 @@ from tuner.brief import find_brief, read_brief
 from tuner.cli.console import progress, say, show, table
 from tuner.cli.faults import placed_in
 from tuner.library import load_library
-from tuner.report.digits import MISSING, count
+from tuner.report.digits import count
 from tuner.search.shelf import Shelf
 
 SHOWN = 15
@@ -38,10 +38,7 @@ def run(name: str) -> None:
         say("no single bottle of the shipped shelves adds to them")
         return
     headings = (("bottle", "left"), ("further patterns", "right"), ("what it opens", "left"))
-    rows = [
-        (p.item.name, count(p.more_patterns), "; ".join(p.opens[:OPENS_SHOWN]) or MISSING)
-        for p in found[:SHOWN]
-    ]
+    rows = [(p.item.name, count(p.more_patterns), _opens(p.opens)) for p in found[:SHOWN]]
     more = len(found) - len(rows)
     caption = "patterns: choices at all positions multiplied, before limits on groups and mass"
     show(
@@ -52,3 +49,11 @@ def run(name: str) -> None:
             f"{more} further bottles help less; {caption}" if more else caption,
         )
     )
+
+
+def _opens(rules: tuple[str, ...]) -> str:
+    """The first rules that a bottle opens, and how many more."""
+    if not rules:
+        return "a starting material"
+    more = len(rules) - OPENS_SHOWN
+    return "; ".join(rules[:OPENS_SHOWN]) + (f"; and {more} more" if more > 0 else "")

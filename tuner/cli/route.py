@@ -18,7 +18,7 @@ from tuner.synthesis.records import Route, Step
 
 ALTERNATIVES = 4
 """Routes of equal length that are looked for beyond the first."""
-PURCHASES_SHOWN = 8
+PURCHASES_SHOWN = 20
 
 Seat = tuple[Core, dict[str, str]]
 """A core of the brief and the groups (short names by locant) with which it is this molecule."""
@@ -135,6 +135,8 @@ def _tell_missing(brief: Brief, shelf: Shelf, seats: Sequence[Seat]) -> None:
     _, found = purchases(shelf.workshop, spaces, shipped_stock(canonical_smiles), brief.limits.max_steps)
     if not found:
         say("no single bottle of the shipped shelves would open one")
-    for purchase in found[:PURCHASES_SHOWN]:
-        opens = f" (opens {', '.join(purchase.opens)})" if purchase.opens else ""
-        say(f"  one more bottle would open it: {purchase.item.name}{opens}")
+        return
+    names = [purchase.item.name for purchase in found[:PURCHASES_SHOWN]]
+    more = f" and {len(found) - len(names)} more" if len(found) > len(names) else ""
+    text = f"one of these bottles would open one: {', '.join(names)}{more}"
+    say(fill(text, WIDEST, initial_indent="  ", subsequent_indent="    "))
