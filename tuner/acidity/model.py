@@ -8,7 +8,6 @@ parent and borrows the constants of its series.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
-from dataclasses import replace
 from pathlib import Path
 
 from tuner.acidity.constants import SCAFFOLDS, AcidityConstants, load_constants
@@ -98,9 +97,3 @@ class AcidityModel:
         fixed = {slot.label: self._resolve(slot.fixed) for slot in prepared.slots if slot.fixed}
         shift = core_shift(self._constants[prepared.scaffold], prepared, fixed, parent, source)
         return Base(None), shift, fixed
-
-
-def without_shift(prepared: PreparedCore) -> PreparedCore:
-    """The same core under a name that no library holds, so that only the ring model speaks (for
-    cross-validation)."""
-    return replace(prepared, name=f"{prepared.scaffold} ring")

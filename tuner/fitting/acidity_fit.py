@@ -17,7 +17,7 @@ import numpy as np
 
 from tuner.acidity.constants import SCAFFOLDS, AcidityConstants, Misfit
 from tuner.acidity.couplings import AMINE_DIALKYL, COUPLING_PARAMETERS, acceptor_product, couple
-from tuner.acidity.features import KIN_MARK, SHARED_PARAMETERS, Features, alone
+from tuner.acidity.features import SHARED_PARAMETERS, Features, alone
 from tuner.acidity.nature import is_empty, kin, nature, para_value
 from tuner.acidity.tables import FloatArray
 from tuner.fitting.acidity_data import MIRROR, REMEMBERED, RING_SLOTS, Row
@@ -325,16 +325,3 @@ def spread_rows(made: Fit) -> list[tuple[str, str, float]]:
             (scaffold, f"misfit_{f.name}", float(getattr(constants, f.name))) for f in fields(constants)
         ]
     return found
-
-
-__all__ = [
-    "KIN_MARK",
-    "Design",
-    "Fit",
-    "Posterior",
-    "constants_of",
-    "fit",
-    "make_design",
-    "posterior",
-    "spread_rows",
-]

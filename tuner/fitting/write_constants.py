@@ -12,7 +12,7 @@ from pathlib import Path
 
 import numpy as np
 
-from tuner.acidity.constants import CONSTANTS_FILE, SCAFFOLDS, SPREADS_FILE, covariance_file
+from tuner.acidity.constants import CONSTANTS_FILE, SPREADS_FILE, covariance_file
 from tuner.fitting.acidity_fit import Fit, constants_of, priors, spread_rows
 
 CONSTANTS_HEAD = """\
@@ -97,6 +97,3 @@ def _total_sd(made: Fit, scaffold: str) -> list[float]:
         for k, (of, name) in enumerate(made.design.names)
         if of == scaffold and name not in COUPLING_PARAMETERS
     ]
-
-
-__all__ = ["SCAFFOLDS", "write_constants"]
