@@ -9,6 +9,7 @@ from math import isfinite, sqrt
 import numpy as np
 
 from tuner.acidity.response import working_range_by_eye
+from tuner.errors import BriefError
 from tuner.library.records import HYDROGEN_SHORT
 from tuner.search.evaluate import evaluate_admitted
 from tuner.search.finalists import Finalist
@@ -22,6 +23,9 @@ from tuner.search.stability import Constant, Pool, stability
 from tuner.search.stages import Stages
 from tuner.search.standing import front_rows
 from tuner.search.tables import MASS_UNIT, Goal, SpaceTables
+
+HOPE = 1e-3
+"""Least hit probability of the best analog; below it the target is out of reach."""
 
 CLOUD = 600
 """Analogs in the backdrop of the trade-off picture."""
@@ -41,6 +45,26 @@ class Standings:
     layer: np.ndarray[tuple[int], np.dtype[np.int64]]
     knee: int
     stability: np.ndarray[tuple[int], np.dtype[np.float64]]
+
+
+def require_hope(pooled: Pooled, rooms: Rooms, goal: Goal) -> None:
+    """An error where the target lies outside what the cores can reach under this brief.
+
+    Raises
+    ------
+    BriefError
+        Names the analog that comes closest.
+    """
+    if not pooled.finalists or max(f.hit for f in pooled.finalists) >= HOPE:
+        return
+    closest = min(pooled.finalists, key=lambda f: (f.offset, f.key))
+    space = rooms.space.spaces[closest.key[0]]
+    raise BriefError(
+        f"the target {goal.target_ph:g} is out of reach: of all analogs {substitution_of(space, closest.key[1:])} "
+        f"on {space.core.name} comes closest, with pKa' {closest.pka:.1f}",
+        place="key target.ph",
+        remedy="choose another core or allow more groups",
+    )
 
 
 def rank(rooms: Rooms, goal: Goal, pooled: Pooled, resolution_pka: float) -> Standings:

@@ -13,7 +13,7 @@ from tuner.library import Library
 from tuner.search.exact import Search
 from tuner.search.finalists import Judge, removed_lines
 from tuner.search.found import Found
-from tuner.search.outcome import Standings, candidates_of, cloud_of, front_of, rank
+from tuner.search.outcome import Standings, candidates_of, cloud_of, front_of, rank, require_hope
 from tuner.search.pool import Pooled, Searcher, gather
 from tuner.search.result import Candidate, DesignResult, InputFile, Progress, SpaceSummary
 from tuner.search.rooms import Rooms
@@ -68,6 +68,7 @@ def design(
     with stages.timed("search and molecules"):
         searcher = _searcher(brief, spaces, goal, method, scheduler, stages)
         pooled = gather(brief, spaces, goal, judge, searcher, stages)
+    require_hope(pooled, rooms, goal)
     if not pooled.finalists:
         raise nothing_left(spaces, goal, brief.search.seed) if not pooled.pooled else judge.nothing_passed()
     with stages.timed("ranking"):
