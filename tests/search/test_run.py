@@ -127,8 +127,8 @@ def test_a_user_objective_ranks_and_its_failures_are_named(tmp_path):
     [
         (
             "ph = 6.4",
-            "ph = 12.5",
-            "the target 12.5 is out of reach: of all analogs ",
+            "ph = 13.5",
+            "the target 13.5 is out of reach: of all analogs ",
         ),
         ("max_steps = 4", "max_steps = 4\nmax_molar_mass_g_mol = 120", "molar mass above 120 g/mol removes"),
         ("max_steps = 4", "max_steps = 4\nmax_clogp = -6", "calculated logP outside the limits removes"),

@@ -60,8 +60,8 @@ def require_hope(pooled: Pooled, rooms: Rooms, goal: Goal) -> None:
     closest = min(pooled.finalists, key=lambda f: (f.offset, f.key))
     space = rooms.space.spaces[closest.key[0]]
     raise BriefError(
-        f"the target {goal.target_ph:g} is out of reach: of all analogs {substitution_of(space, closest.key[1:])} "
-        f"on {space.core.name} comes closest, with pKa' {closest.pka:.1f}",
+        f"the target {goal.target_ph:g} is out of reach: of all analogs {space.core.name} with "
+        f"{substitution_of(space, closest.key[1:])} comes closest, with pKa' {closest.pka:.1f}",
         place="key target.ph",
         remedy="choose another core or allow more groups",
     )
