@@ -1,8 +1,8 @@
 """Transition intervals and constants of well-known indicator dyes, as handbooks print them.
 
 Intervals of the sulfonephthaleins: any chemistry handbook (for example the CRC Handbook of Chemistry and
-Physics, table of
-acid-base indicators), as remembered. An interval is what an eye sees, about pKa' - 1 to pKa' + 1, printed to
+Physics, table of acid-base indicators), as remembered. An interval is what an eye sees, about pKa' - 1 to
+pKa' + 1, printed to
 0.2; so the predicted
 pKa' (ionic strength 0.1 mol/L, as in titrations) must lie inside it.
 """

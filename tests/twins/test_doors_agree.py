@@ -1,10 +1,8 @@
 """Space door and molecule door: the same analog, the same pKa and the same error.
 
 Random patterns of every core: once as look-ups in the tables of a whole space, once as a SMILES that is
-taken apart anew. Groups that
-ionise are left out here (the space door takes one form of them, the molecule door all). A molecule that is
-seen as another,
-better-fitting core is passed over.
+taken apart anew. Groups that ionise are left out here (the space door takes one form of them, the molecule
+door all). A molecule that is seen as another, better-fitting core is passed over.
 """
 
 from __future__ import annotations

@@ -1,20 +1,16 @@
 """How far does an organic cosolvent move a pKa?
 
 A physical estimate with a wide uncertainty, for planning only: a shift measured for one's own dye in one's
-own mixture
-(`offset` of the medium) is always better. The electrostatic part is Born's: charging ions costs more as the
-permittivity falls,
-so neutral acids weaken. Cationic acids lose no charge on the way, so the electrostatic part cancels; what
-remains is the
-greater basicity of mixed water, which strengthens them a little and turns back towards the pure solvent.
+own mixture (`offset` of the medium) is always better. The electrostatic part is Born's: charging ions costs
+more as the permittivity falls, so neutral acids weaken. Cationic acids lose no charge on the way, so the
+electrostatic part cancels; what remains is the greater basicity of mixed water, which strengthens them a
+little and turns back towards the pure solvent.
 
-Sources. Permittivities at 25 degC: Akerlof, J. Am. Chem. Soc. 1932, 54, 4125 (methanol, ethanol, 2-propanol,
-acetone);
-Harned & Owen, The Physical Chemistry of Electrolytic Solutions, 3rd ed. 1958 (1,4-dioxane); common tables
-for acetonitrile and
-dimethyl sulfoxide; all as remembered, rounded, not checked against print. The two coefficients are set so
-that phenol in
-50 % methanol rises by about 0.95 and anilinium falls by about 0.6, as remembered; common practice, no source.
+Sources. Permittivities at 25 degC: Akerlof, J. Am. Chem. Soc. 1932, 54, 4125 (methanol, ethanol,
+2-propanol, acetone); Harned & Owen, The Physical Chemistry of Electrolytic Solutions, 3rd ed. 1958
+(1,4-dioxane); common tables for acetonitrile and dimethyl sulfoxide; all as remembered, rounded, not
+checked against print. The two coefficients are set so that phenol in 50 % methanol rises by about 0.95 and
+anilinium falls by about 0.6, as remembered; common practice, no source.
 """
 
 from __future__ import annotations

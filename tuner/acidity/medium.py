@@ -1,10 +1,9 @@
 """How does a pKa of 25 degC and infinite dilution change in the working medium?
 
 Every relation here is affine in the pKa of 25 degC and linear in the charge of the protonated form, so the
-whole medium
-is one `MediumEffect` that acts alike on a single value, an array, or the look-up tables of a whole space.
-The result is the conditional pKa', the pH (by activity of H+) at which the concentrations of both forms are
-equal.
+whole medium is one `MediumEffect` that acts alike on a single value, an array, or the look-up tables of a
+whole space. The result is the conditional pKa', the pH (by activity of H+) at which the concentrations of
+both forms are equal.
 """
 
 from __future__ import annotations
@@ -43,8 +42,7 @@ class MediumEffect:
     molecule.
 
     `sd` is the standard error that the medium adds (pKa units). `rate_scale`, `rate_intercept`,
-    `rate_per_charge` are the derivatives of the first
-    three with temperature (per kelvin).
+    `rate_per_charge` are the derivatives of the first three with temperature (per kelvin).
     """
 
     scale: float

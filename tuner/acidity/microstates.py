@@ -1,11 +1,9 @@
 """What does a molecule with several ionising groups do as the pH changes?
 
 Each site is protonated (1) or not (0); a microstate is one choice for every site. The binding polynomial
-over all of them gives the
-macroscopic constants, the share of each state, and the pH at which one chosen site is half ionised.
-Statistical factors
-(log10 2 for two equivalent sites) and zwitterions come out by themselves: they are microstates like any
-other.
+over all of them gives the macroscopic constants, the share of each state, and the pH at which one chosen
+site is half ionised. Statistical factors (log10 2 for two equivalent sites) and zwitterions come out by
+themselves: they are microstates like any other.
 
 All sums are over powers of ten far apart, so they are taken as log-sum-exp.
 """
@@ -47,8 +45,7 @@ class Microstates:
         1 where the site holds its proton.
     log_beta : float array, shape (2**n,)
         log10 of each state's formation constant from the fully deprotonated form: the state with k protons
-        has
-        the weight 10**(log_beta - k * pH).
+        has the weight 10**(log_beta - k * pH).
     """
 
     protonated: NDArray[np.int64]
@@ -87,8 +84,7 @@ class Microstates:
         """The pH at which the sites given are half ionised on average (one site, or several equivalent ones).
 
         Found by bisection; the mean ionisation rises monotonically with pH for the sites' sum. NaN where
-        there is no crossing between
-        `low` and `high` (default: a little beyond the outermost steps).
+        there is no crossing between `low` and `high` (default: a little beyond the outermost steps).
         """
         chosen = list(sites)
         if self.n_sites == 1 and low is None and high is None:
@@ -160,11 +156,10 @@ def from_table(
 
     Notes
     -----
-    A thermodynamic cycle must close: protonating A then B costs what B then A costs. Constants estimated site
-    by site do not quite do so; each state's formation constant is therefore the mean over all orders in which
-    the sites leave the reference state, worked out layer by layer, which spreads the misclosure evenly. Take
-    as
-    reference the state in which the constants are surest.
+    A thermodynamic cycle must close: protonating A then B costs what B then A costs. Constants estimated
+    site by site do not quite do so; each state's formation constant is therefore the mean over all orders
+    in which the sites leave the reference state, worked out layer by layer, which spreads the misclosure
+    evenly. Take as reference the state in which the constants are surest.
 
     Raises
     ------

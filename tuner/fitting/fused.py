@@ -2,12 +2,9 @@
 position?
 
 Least squares over measured compounds with one neutral group on such a core: the shift from the parent
-against the shift
-that the ring model would give at full transmission. Run: `python -m tuner.fitting.fused TABLE.csv`, columns
-smiles, pka. The
-factors in `libraries/cores.toml` are these, rounded, with errors that also cover positions with few
-compounds; naphthol
-positions without data take those of the naphthylamine.
+against the shift that the ring model would give at full transmission. Run: `python -m tuner.fitting.fused
+TABLE.csv`, columns smiles, pka. The factors in `libraries/cores.toml` are these, rounded, with errors that
+also cover positions with few compounds; naphthol positions without data take those of the naphthylamine.
 """
 
 from __future__ import annotations

@@ -1,16 +1,13 @@
 """How does the enthalpy of ionisation depend on the pKa itself?
 
-Refits, from pKa's measured at several temperatures by one laboratory at a time, the regularity
-dH0 = a + b * pKa25 with a constant heat capacity, one for phenols and one for anilinium ions, and prints the
-lines
-for `libraries/series.toml`. Run: `python -m tuner.fitting.temperature TABLE.csv`, columns smiles,
-measured_by,
+Refits, from pKa's measured at several temperatures by one laboratory at a time, the regularity dH0 = a + b
+* pKa25 with a constant heat capacity, one for phenols and one for anilinium ions, and prints the lines for
+`libraries/series.toml`. Run: `python -m tuner.fitting.temperature TABLE.csv`, columns smiles, measured_by,
 t_celsius, pka, book.
 
 Phenols with pKa 7 to 10.6 do not tell intercept and slope apart (a free fit gives 8.9 and 1.37); the
-intercept is
-held at zero, which also serves the strong nitrophenols outside that range (2,4-dinitrophenol, about 10
-kJ/mol).
+intercept is held at zero, which also serves the strong nitrophenols outside that range (2,4-dinitrophenol,
+about 10 kJ/mol).
 """
 
 from __future__ import annotations

@@ -1,12 +1,10 @@
 """How wrong is the molecule door on tables of measured values, and does it know?
 
-Scores for molecules with several ionising groups, for dyes, and for temperature series. The ring model's own
-scores on
-compounds left out of its fit stand in `tuner.fitting`; here the shipped model predicts as it is. Of the
-tables scored here the fit
-has seen only the single-site steps listed in `libraries/acidity/microconstants.csv`; parents and
-transmission factors of cores, and
-the rules for side sites, were set by hand on a few of the rows and on handbook values.
+Scores for molecules with several ionising groups, for dyes, and for temperature series. The ring model's
+own scores on compounds left out of its fit stand in `tuner.fitting`; here the shipped model predicts as it
+is. Of the tables scored here the fit has seen only the single-site steps listed in
+`libraries/acidity/microconstants.csv`; parents and transmission factors of cores, and the rules for side
+sites, were set by hand on a few of the rows and on handbook values.
 """
 
 from __future__ import annotations

@@ -1,8 +1,7 @@
 """What is the pKa of this molecule in this medium?
 
 SMILES in, `Prediction` out. A molecule that cannot be read or treated gives an empty prediction with a note
-that says why;
-nothing here raises for a bad molecule.
+that says why; nothing here raises for a bad molecule.
 """
 
 from __future__ import annotations
@@ -87,8 +86,7 @@ class MoleculeDoor:
         smiles : str
         reporting : str or int
             Which site reports: "" by rule (phenols before anilines, larger core first), a kind of site, or
-            an atom number of the
-            given SMILES.
+            an atom number of the given SMILES.
         place : str
             File and row, for the note.
         """
@@ -198,10 +196,8 @@ class MoleculeDoor:
         """pH of half ionisation of the reporting site, and a note where that needs one.
 
         A site that shares its protons with an equal one (catechol, a sulfonephthalein's two arms) is half
-        ionised only between
-        two steps; what is seen then is a step, and the step is given: the one that the core's parent stands
-        for, else the
-        first in which the site takes a good part.
+        ionised only between two steps; what is seen then is a step, and the step is given: the one that the
+        core's parent stands for, else the first in which the site takes a good part.
         """
         steps = [float(p) for p in states.macroscopic_pkas()]
         if answer.core in HELD_PAIRS and (0, 1) in ionisation.pair_energies:

@@ -4,18 +4,16 @@ Rules, first that applies:
 
 1. A tabulated group is taken as it is.
 2. A saturated carbon: methyl plus the field effects of what it carries, attenuated (0.43 towards meta, 0.62
-towards para; a
-   charge that is further away falls off more slowly than a dipole).
+   towards para; a charge that is further away falls off more slowly than a dipole).
 3. An aromatic ring: the bare ring plus a share of the constants of what it carries.
 4. Anything else: the nearest tabulated relative, found by simplifying the group's far end step by step (a
-chain to methyl, a
-   substituted ring to the bare ring), plus a share of the difference between what was there and what was put
-   instead.
+   chain to methyl, a substituted ring to the bare ring), plus a share of the difference between what was
+   there and what was put instead.
 5. No relative in the table: the field effect of the entry atom's neighbours alone, with a very wide error.
 
 The shares were set by eye on tabulated pairs (CH2Cl, CH2CN, COCF3, OCF3, SCF3, SO2CF3, 4-nitrophenyl,
-4-nitrophenylazo,
-4-nitrostyryl, 2-nitrovinyl); common practice, no source. Every estimate carries a wider error and says so.
+4-nitrophenylazo, 4-nitrostyryl, 2-nitrovinyl); common practice, no source. Every estimate carries a wider
+error and says so.
 """
 
 from __future__ import annotations

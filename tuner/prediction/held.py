@@ -18,10 +18,9 @@ from dataclasses import dataclass
 class HeldPair:
     """Two equal reporting groups of one core.
 
-    `parent_step` is the step whose constant is the core's parent pKa (1 or 2); `other_pka` that of the other
-    step, for the bare
-    core, with its standard error; `follows` whether the other step moves with the substituents as the first
-    does.
+    `parent_step` is the step whose constant is the core's parent pKa (1 or 2); `other_pka` that of the
+    other step, for the bare core, with its standard error; `follows` whether the other step moves with the
+    substituents as the first does.
     """
 
     parent_step: int

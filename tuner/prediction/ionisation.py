@@ -50,8 +50,7 @@ class IonSite:
     """One site as the microstates see it.
 
     `charge_if_ionised` is -1 for an acid, +1 for an amine; `own` evaluates a phenol or aniline for a set of
-    charged
-    sites, None for any other site, whose pKa beside neutral neighbours is `pka`.
+    charged sites, None for any other site, whose pKa beside neutral neighbours is `pka`.
     """
 
     kind: str
@@ -199,9 +198,8 @@ class Ionisation:
         """Standard error of site k's constants by what the other free sites do to it (pKa units).
 
         Pairs whose energy was fixed beforehand carry their own error. Constants of charged neighbours,
-        hydrogen bonds and tautomers are known less well than those of
-        neutral groups;
-        sized on molecules with two and more sites so that stated intervals hold.
+        hydrogen bonds and tautomers are known less well than those of neutral groups; sized on molecules
+        with two and more sites so that stated intervals hold.
         """
         own = [j for j in self.free if j != k and (k, j) not in self._energies]
         felt = sum(abs(self.energy(k, j)) for j in own)

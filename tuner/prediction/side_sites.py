@@ -1,10 +1,9 @@
 """What is the pKa of an ionising group that is neither a phenol nor an aniline?
 
 Side chains of dyes carry acids, amines, thiols and the like. Each kind has a parent
-(`libraries/side_sites.csv`, or the series
-of that name), a Hammett sensitivity where it sits on a benzene ring, and a fall with the field effects of
-what the chain carries.
-Everything here holds with the rest of the molecule in its neutral form; charges are dealt with by the caller.
+(`libraries/side_sites.csv`, or the series of that name), a Hammett sensitivity where it sits on a benzene
+ring, and a fall with the field effects of what the chain carries. Everything here holds with the rest of
+the molecule in its neutral form; charges are dealt with by the caller.
 """
 
 from __future__ import annotations

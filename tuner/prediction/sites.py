@@ -1,8 +1,7 @@
 """What is the pKa of each site of a molecule, and of which groups does it consist?
 
 Turns the site views of a dissection into evaluated sites: phenols and anilines through the ring model, for
-any set of charged
-neighbours; every other site through its own rules.
+any set of charged neighbours; every other site through its own rules.
 """
 
 from __future__ import annotations

@@ -1,7 +1,7 @@
 """How is a substituent built, seen from its open valence?
 
-One level at a time: the entry atom and what hangs on it, each piece again a group. That is all a rule for estimating the
-constants of an untabulated group needs to know; the rules themselves stand elsewhere.
+One level at a time: the entry atom and what hangs on it, each piece again a group. That is all a rule for
+estimating the constants of an untabulated group needs to know; the rules themselves stand elsewhere.
 """
 
 from __future__ import annotations
@@ -33,9 +33,9 @@ class Branch:
 class Anatomy:
     """A group seen from its open valence.
 
-    `entry` is the entry atom as SMILES writes it alone ("C", "[NH2+]" ...). For an aromatic ring `ring` is the bare ring
-    as a group and `on_ring` lists (relation to the open valence, group); relations are "ortho", "meta", "para" on a
-    benzene ring and "far" on any other. `charge` is the group's net charge.
+    `entry` is the entry atom as SMILES writes it alone ("C", "[NH2+]" ...). For an aromatic ring `ring` is
+    the bare ring as a group and `on_ring` lists (relation to the open valence, group); relations are
+    "ortho", "meta", "para" on a benzene ring and "far" on any other. `charge` is the group's net charge.
     """
 
     smiles: str
@@ -61,7 +61,9 @@ def _entry_text(atom: Any, hydrogens: int) -> str:
 
 def _aromatic_system(mol: Mol, entry: int) -> frozenset[int]:
     """Atoms of the aromatic rings fused to the entry atom's ring."""
-    rings = [set(r) for r in mol.GetRingInfo().AtomRings() if all(mol.GetAtomWithIdx(k).GetIsAromatic() for k in r)]
+    rings = [
+        set(r) for r in mol.GetRingInfo().AtomRings() if all(mol.GetAtomWithIdx(k).GetIsAromatic() for k in r)
+    ]
     system = {entry}
     grown = True
     while grown:
@@ -125,7 +127,8 @@ def anatomy(smiles: str) -> Anatomy:
     dummy = next(a.GetIdx() for a in mol.GetAtoms() if a.GetAtomicNum() == 0)
     atom = mol.GetAtomWithIdx(dummy).GetNeighbors()[0]
     entry = int(atom.GetIdx())
-    ring, on_ring = ("", ())
+    ring = ""
+    on_ring: tuple[tuple[str, str], ...] = ()
     branches: list[Branch] = []
     if atom.GetIsAromatic():
         ring, on_ring = _ring_anatomy(mol, entry, dummy)

@@ -1,8 +1,7 @@
 """What do the groups of a site look like while other sites of the molecule are ionised?
 
 The charged form of a group (`*C(=O)[O-]` for `*C(=O)O`) has constants of its own. It is cut out of the
-molecule after
-the charges were set, so that any group, tabulated or not, is spelled as the tables spell it.
+molecule after the charges were set, so that any group, tabulated or not, is spelled as the tables spell it.
 """
 
 from __future__ import annotations
@@ -45,8 +44,7 @@ def charged_groups(smiles: str, groups: Iterable[PlacedGroup], charges: Mapping[
     groups : PlacedGroups of one SiteView
     charges : mapping
         Atom number -> formal charge of the ionised form: -1 for an acid that lost its proton, +1 for an
-        amine that
-        took one up. Boron is left as it is.
+        amine that took one up. Boron is left as it is.
 
     Returns
     -------
