@@ -1,11 +1,10 @@
 """Which ionising groups act together in ways that constants of single groups do not tell?
 
 - Cores that hold two ionising groups in one chromophore (sulfonephthaleins, phthaleins,
-1,8-dihydroxynaphthalene).
+  1,8-dihydroxynaphthalene).
 - Cores whose other groups are ionised at the transition and counted in the measured parent.
 - o,o'-Dihydroxyazo dyes: the two hydroxyls share a hydrogen bond with the azo group, which makes the first
-proton leave early and the
-  second late.
+  proton leave early and the second late.
 - Hydroxyazo dyes also take up a proton at the azo group in strong acid.
 """
 
