@@ -10,7 +10,7 @@ import pytest
 from tests.report.sample import sample_exhibits, sample_result
 from tuner.errors import TunerError
 from tuner.report import run_files, write_run
-from tuner.report.folder import free_folder, write_file, write_folder
+from tuner.report.folder import check_free, free_folder, write_file, write_folder
 from tuner.report.manifest import manifest
 from tuner.report.structure_file import candidates_sdf
 
@@ -96,6 +96,14 @@ def test_a_place_that_cannot_be_written_is_named(tmp_path: Path) -> None:
     (tmp_path / "file").write_text("x", encoding="utf-8")
     with pytest.raises(TunerError, match="cannot be written"):
         write_folder(tmp_path / "file" / "run", {"a": b"1"})
+
+
+def test_a_place_that_cannot_be_written_is_named_before_the_search(tmp_path: Path) -> None:
+    (tmp_path / "file").write_text("x", encoding="utf-8")
+    with pytest.raises(TunerError, match="a file is in the way"):
+        check_free(tmp_path / "file" / "run", again=False)
+    check_free(tmp_path / "new" / "run", again=False)
+    assert [path.name for path in tmp_path.iterdir()] == ["file"]
 
 
 def test_a_file_is_replaced_whole(tmp_path: Path) -> None:

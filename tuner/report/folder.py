@@ -14,6 +14,8 @@ from pathlib import Path
 
 from tuner.errors import TunerError
 
+ELSEWHERE = "choose another place with --out"
+
 MANIFEST = "manifest.json"
 """The file by which a folder is known to be a run's."""
 
@@ -23,6 +25,7 @@ def check_free(folder: Path, again: bool) -> None:
     is set.
     """
     if not folder.exists() and not folder.is_symlink():
+        _check_writable(folder)
         return
     if again and (folder / MANIFEST).is_file():
         return
@@ -31,6 +34,17 @@ def check_free(folder: Path, again: bool) -> None:
     remedy = "choose another folder" if again else "choose another folder, or replace the run with --again"
     what = "there is something else already" if again else "this exists already"
     raise TunerError(what, place=folder, remedy=remedy)
+
+
+def _check_writable(folder: Path) -> None:
+    """A TunerError where the nearest existing folder above cannot take a new one: better before a search
+    than after it.
+    """
+    above = next(parent for parent in folder.absolute().parents if parent.exists())
+    if not above.is_dir():
+        raise TunerError("cannot be written (a file is in the way)", place=folder, remedy=ELSEWHERE)
+    if not os.access(above, os.W_OK | os.X_OK):
+        raise TunerError("cannot be written (permission denied)", place=folder, remedy=ELSEWHERE)
 
 
 def free_folder(parent: Path, name: str) -> Path:
@@ -132,4 +146,4 @@ def _put_in_place(growing: Path, folder: Path) -> None:
 def _cannot(path: Path, fault: OSError) -> TunerError:
     """The system's refusal in our words."""
     reason = (fault.strerror or "the system refused").lower()
-    return TunerError(f"cannot be written ({reason})", place=path, remedy="choose another place with --out")
+    return TunerError(f"cannot be written ({reason})", place=path, remedy=ELSEWHERE)
