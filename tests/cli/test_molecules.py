@@ -46,6 +46,7 @@ def test_rows_of_the_wrong_length_are_kept_and_marked(tmp_path: Path) -> None:
         ("smiles;name\nC;a\n", "not separated by commas"),
         ("smiles,a,a\nC,1,2\n", '"a" stands twice'),
         (b"smiles\n\xff\n", "UTF-8"),
+        ('smiles,name\n"Oc1ccccc1,a\nC,b\n', "comma-separated"),
     ],
 )
 def test_a_slip_in_the_table_is_named(tmp_path: Path, text: str | bytes, part: str) -> None:

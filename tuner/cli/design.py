@@ -57,7 +57,6 @@ def _print(result: DesignResult, files: tuple[Path, ...]) -> None:
     target = result.brief.target
     say(result.brief.title)
     say(f"{target_in_words(target)} in {medium_in_words(target.medium)}")
-    say("")
     show(candidate_table(result))
     say("")
     say(fill(f"{result.method.capitalize()} search. {result.certificate}", WIDEST))

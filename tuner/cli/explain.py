@@ -19,13 +19,18 @@ from tuner.report.digits import drift, pka_text, signed
 from tuner.report.wording import CAUTIONS, medium_in_words
 
 
+LONGEST = 60
+"""Signs of a SMILES that an error repeats."""
+
+
 def run(smiles: str, temperature_c: float, ionic_strength_m: float, overlay: Path | None) -> None:
     """Predict and print the sum, the medium, the constants of the whole molecule, and what was assumed."""
     medium = Medium(temperature_c=temperature_c, ionic_strength_m=ionic_strength_m)
     answer = predictor(medium, overlay)(smiles)
     if not answer.found:
         reason = "; ".join(answer.notes) or "no value"
-        raise StructureError(f"no pKa for {smiles}: {reason}")
+        shown = smiles if len(smiles) <= LONGEST else smiles[: LONGEST - 3] + "..."
+        raise StructureError(f"no pKa for {shown}: {reason}")
     name = f"{answer.substitution} on {answer.core}" if answer.core else answer.substitution
     say(f"{answer.treated}: {name}, reporting atom {answer.reporting_atom}")
     show(_sum_table(answer))

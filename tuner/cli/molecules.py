@@ -46,7 +46,9 @@ def read_molecules(path: Path) -> Molecules:
     TunerError
         File absent, empty, no text; column `smiles` missing; a column named twice; no row.
     """
-    reader = csv.reader(io.StringIO(read_text(path, TunerError), newline=""), skipinitialspace=True)
+    reader = csv.reader(
+        io.StringIO(read_text(path, TunerError), newline=""), skipinitialspace=True, strict=True
+    )
     try:
         records = [(reader.line_num, record) for record in reader if any(cell.strip() for cell in record)]
     except csv.Error as fault:
