@@ -18,7 +18,6 @@ from tuner.prediction.records import Prediction, Term
 from tuner.report.digits import drift, pka_text, signed
 from tuner.report.wording import CAUTIONS, medium_in_words
 
-
 LONGEST = 60
 """Signs of a SMILES that an error repeats."""
 
