@@ -12,7 +12,7 @@ import numpy as np
 from tuner.acidity.tables import PairwiseSum
 from tuner.search.space import CountLimit
 from tuner.search.tables import FLAG_UNIT, MASS_UNIT, PKA_UNIT, Condition, Goal, SpaceTables, fixed_sum
-from tuner.synthesis.records import NO_ROUTE, SplitStepTable, StepPart, StepTable, StepWay
+from tuner.synthesis.records import NO_ROUTE, ListedPart, SplitStepTable, StepPart, StepTable, StepWay
 
 Rng = np.random.Generator
 
@@ -90,8 +90,21 @@ def _random_way(rng: Rng, shape) -> StepWay:
         counts = rng.integers(0, 4, (3,) * len(positions)).astype(np.uint8)
         counts[rng.random(counts.shape) < 0.1] = NO_ROUTE
         classes = tuple(rng.integers(0, 3, shape[p]) for p in positions)
-        parts.append(StepPart(tuple(int(p) for p in positions), classes, counts))
+        part = StepPart(tuple(int(p) for p in positions), classes, counts)
+        parts.append(_listed(part, shape) if rng.random() < 0.5 else part)
     return StepWay(int(rng.integers(0, 2)), tuple(parts))
+
+
+def _listed(part: StepPart, shape) -> ListedPart:
+    """The same part with its makeable patterns listed, positions in ascending order."""
+    positions = tuple(sorted(part.positions))
+    sizes = tuple(shape[p] for p in positions)
+    rows = every_row(sizes)
+    whole = np.zeros((len(rows), len(shape)), dtype=np.int64)
+    whole[:, positions] = rows
+    counts = part.at(whole)
+    kept = counts < NO_ROUTE
+    return ListedPart(positions, sizes, np.flatnonzero(kept).astype(np.int64), counts[kept])
 
 
 def random_limits(rng: Rng, shape, group) -> tuple[CountLimit, ...]:

@@ -18,7 +18,7 @@ from tuner.acidity.tables import FloatArray, IntArray
 from tuner.search.evaluate import standard_error
 from tuner.search.probability import Interval, hit_probability
 from tuner.search.tables import PKA_UNIT, FixedSum, Goal, Int32, Int64, SpaceTables, in_ph
-from tuner.synthesis.records import NO_ROUTE, StepPart, Steps
+from tuner.synthesis.records import NO_ROUTE, ListedPart, StepPart, Steps
 
 LARGEST_BLOCK = 2**20
 """Analogs per block at most: 4 MiB per whole-number array, a few of them stay in the cache of one core."""
@@ -112,8 +112,12 @@ def step_grid(steps: Steps, prefix: Sequence[int], inner_shape: Sequence[int]) -
     return best
 
 
-def _part_grid(part: StepPart, prefix: Sequence[int], start: int, n_inner: int) -> NDArray[np.int16]:
+def _part_grid(
+    part: StepPart | ListedPart, prefix: Sequence[int], start: int, n_inner: int
+) -> NDArray[np.int16]:
     """One part over the inner grid, with axes of length 1 where it does not depend on a position."""
+    if isinstance(part, ListedPart):
+        return _listed_grid(part, prefix, start, n_inner)
     order = np.argsort(part.positions)
     counts = np.transpose(part.counts, order)
     positions = [part.positions[k] for k in order]
@@ -123,6 +127,20 @@ def _part_grid(part: StepPart, prefix: Sequence[int], start: int, n_inner: int) 
     grid = counts[fixed][np.ix_(*(c for _, c in inner))] if inner else counts[fixed]
     lengths = {p - start: len(c) for p, c in inner}
     return np.asarray(grid, dtype=np.int16).reshape([lengths.get(axis, 1) for axis in range(n_inner)])
+
+
+def _listed_grid(part: ListedPart, prefix: Sequence[int], start: int, n_inner: int) -> NDArray[np.int16]:
+    """The same for a part whose patterns are listed."""
+    pairs = list(zip(part.positions, part.sizes, strict=True))
+    inner = {p - start: size for p, size in pairs if p >= start}
+    span = prod(inner.values())
+    head = 0
+    for p, size in pairs:
+        head = head * size + int(prefix[p]) if p < start else head
+    low, high = np.searchsorted(part.keys, [head * span, (head + 1) * span])
+    grid = np.full(span, NO_ROUTE, dtype=np.int16)
+    grid[part.keys[low:high] - head * span] = part.counts[low:high]
+    return grid.reshape([inner.get(axis, 1) for axis in range(n_inner)])
 
 
 class BlockPlan:

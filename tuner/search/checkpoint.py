@@ -17,6 +17,7 @@ from tuner.errors import SearchError
 from tuner.search.rows import FIELDS, Analogs
 from tuner.search.standing import Standing
 from tuner.search.tables import FixedSum, Goal, SpaceTables
+from tuner.synthesis.records import ListedPart
 
 SECONDS_BETWEEN = 5.0
 
@@ -43,8 +44,8 @@ def problem_digest(spaces: Sequence[SpaceTables], goal: Goal, best_n: int, resol
             for part in way.parts:
                 digest.update(repr(part.positions).encode())
                 add(part.counts)
-                for classes in part.class_of:
-                    add(classes)
+                for array in (part.keys,) if isinstance(part, ListedPart) else part.class_of:
+                    add(array)
         for limit in tables.limits:
             digest.update(repr((limit.name, limit.low, limit.high)).encode())
             for weights in limit.weights:

@@ -6,6 +6,7 @@ Exact whole numbers (Python integers), by dynamic programming over positions; no
 from __future__ import annotations
 
 from collections.abc import Sequence
+from math import prod
 from typing import Any
 
 import numpy as np
@@ -13,7 +14,7 @@ import numpy as np
 from tuner.acidity.tables import IntArray
 from tuner.search.space import CountLimit
 from tuner.search.symmetry import Permutation, cycles
-from tuner.synthesis.records import NO_ROUTE, StepPart, Steps
+from tuner.synthesis.records import NO_ROUTE, ListedPart, StepPart, Steps
 
 State = tuple[int, ...]
 
@@ -106,8 +107,12 @@ def count_by_steps(steps: Steps) -> dict[int, int]:
     return dict(sorted(total.items()))
 
 
-def _part_histogram(part: StepPart) -> dict[int, int]:
+def _part_histogram(part: StepPart | ListedPart) -> dict[int, int]:
     """Number of choices of a part's positions for each of its counts."""
+    if isinstance(part, ListedPart):
+        listed = {int(count): int(n) for count, n in enumerate(np.bincount(part.counts)) if n}
+        none = prod(part.sizes) - len(part.keys)
+        return {**listed, NO_ROUTE: listed.get(NO_ROUTE, 0) + none} if none else listed
     weights = [
         np.bincount(classes, minlength=part.counts.shape[p]) for p, classes in enumerate(part.class_of)
     ]

@@ -8,9 +8,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tuner.acidity.tables import IntArray
+from tuner.search.listed_steps import ListedMinima
 from tuner.search.spans import Budget
 from tuner.search.tables import Int64, SpaceTables
-from tuner.synthesis.records import NO_ROUTE, StepPart
+from tuner.synthesis.records import NO_ROUTE, ListedPart, StepPart
 
 Counts = NDArray[np.uint8]
 
@@ -22,7 +23,7 @@ class LeastSteps:
 
     def __init__(self, tables: SpaceTables, budget: Budget) -> None:
         self._ways = [
-            (way.constant, [_PartMinima(part, budget) for part in way.parts]) for way in tables.steps.ways
+            (way.constant, [_minima_of(part, budget) for part in way.parts]) for way in tables.steps.ways
         ]
 
     def at(self, index: IntArray) -> Int64:
@@ -36,6 +37,11 @@ class LeastSteps:
         """
         found = [_total(constant, [p.children(index) for p in parts]) for constant, parts in self._ways]
         return np.asarray(reduce(np.minimum, found))
+
+
+def _minima_of(part: StepPart | ListedPart, budget: Budget) -> _PartMinima | ListedMinima:
+    """The minima of a part, tabulated or listed as the part is."""
+    return ListedMinima(part, budget) if isinstance(part, ListedPart) else _PartMinima(part, budget)
 
 
 class _PartMinima:

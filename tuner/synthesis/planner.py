@@ -19,7 +19,7 @@ from tuner.synthesis.alphabet import alphabet, leading_to
 from tuner.synthesis.compress import step_part
 from tuner.synthesis.joining import HalfPlan, joined, plan_halves
 from tuner.synthesis.lattice import Frame, Lattice, as_pattern, relax
-from tuner.synthesis.records import NO_ROUTE, SplitStepTable, Steps, StepTable, StepWay
+from tuner.synthesis.records import NO_ROUTE, ListedPart, SplitStepTable, StepPart, Steps, StepTable, StepWay
 from tuner.synthesis.setting import Stage, Workshop
 
 MOST_IN_ONE_PIECE = 5
@@ -64,7 +64,7 @@ class CorePlan:
         """Each way as constant steps and the lattices whose counts add up."""
         if self.whole is not None:
             return ((0, (self.whole,)),)
-        ways = [(1, tuple(x for x in way.finished if x is not None)) for way in self.joinings]
+        ways = [(way.joining.steps, tuple(x for x in way.finished if x is not None)) for way in self.joinings]
         return (*ways, *((0, way.finished) for way in self.bought))
 
 
@@ -96,7 +96,11 @@ def _nitrogen(core: Core, labels: Iterable[str]) -> tuple[bool, ...]:
 
 
 def _in_one_piece(
-    workshop: Workshop, core: Core, listed: Mapping[str, Sequence[str]], halved: Sequence[Joining], max_steps: int
+    workshop: Workshop,
+    core: Core,
+    listed: Mapping[str, Sequence[str]],
+    halved: Sequence[Joining],
+    max_steps: int,
 ) -> CorePlan:
     labels = tuple(listed)
     stage = Stage(workshop, core)
@@ -105,19 +109,25 @@ def _in_one_piece(
     wanted = dict.fromkeys(labels, groups)
     ways, starts = [], {}
     for joining in halved:
-        halves = plan_halves(workshop, joining, core, wanted, max_steps - 1)
+        halves = plan_halves(workshop, joining, core, wanted, max_steps - joining.steps)
         if halves is not None:
             ways.append(JoinedWay(joining, halves, ()))
-            for pattern, n in joined(halves).items():
+            for pattern, before in joined(halves).items():
+                n = before + joining.steps
                 if n <= max_steps:
                     starts[pattern] = min(n, starts.get(pattern, n))
     begin = [*((dict(p), n) for p, n in starts.items()), *((dict(p), 0) for p in workshop.bought(core))]
-    lattice = relax(stage, frame, begin, max_steps)
+    asked = {label: frozenset((HYDROGEN_SHORT, *own)) for label, own in listed.items()}
+    lattice = relax(stage, frame, begin, max_steps, frame.holding(asked))
     return CorePlan(workshop, core, max_steps, lattice, starts, tuple(ways))
 
 
 def _in_parts(
-    workshop: Workshop, core: Core, listed: Mapping[str, Sequence[str]], halved: Sequence[Joining], max_steps: int
+    workshop: Workshop,
+    core: Core,
+    listed: Mapping[str, Sequence[str]],
+    halved: Sequence[Joining],
+    max_steps: int,
 ) -> CorePlan:
     stage = Stage(workshop, core, finishing=True)
     wanted = {label: leading_to(stage, own) for label, own in listed.items()}
@@ -125,11 +135,13 @@ def _in_parts(
     joinings: list[JoinedWay] = []
     split: tuple[tuple[str, ...], ...] = ()
     for joining in halved:
-        halves = plan_halves(workshop, joining, core, wanted, max_steps - 1)
+        halves = plan_halves(workshop, joining, core, wanted, max_steps - joining.steps)
         if halves is None:
             continue
         finished = tuple(
-            _finish(stage, plan.labels, wanted, list(plan.counts.items()), max_steps - 1) if plan.labels else None
+            _finish(stage, plan.labels, wanted, list(plan.counts.items()), max_steps - joining.steps)
+            if plan.labels
+            else None
             for plan in halves
         )
         joinings.append(JoinedWay(joining, halves, finished))
@@ -155,7 +167,8 @@ def _finish(
     """What can still be done on the finished dye at some of its positions."""
     groups = frozenset().union(*(wanted[label] for label in labels))
     frame = Frame(tuple(labels), _nitrogen(stage.core, labels), alphabet(stage, groups))
-    return relax(stage, frame, [(as_pattern(pattern), n) for pattern, n in start], max_steps)
+    begin = [(as_pattern(pattern), n) for pattern, n in start]
+    return relax(stage, frame, begin, max_steps)
 
 
 def steps_over(plan: CorePlan, choices: Choices) -> Steps:
@@ -176,7 +189,8 @@ def steps_over(plan: CorePlan, choices: Choices) -> Steps:
         ways.append(StepWay(constant, tuple(parts)))
     if plan.whole is not None:
         part = ways[0].parts[0]
-        return StepTable(part.class_of, part.counts)
+        if isinstance(part, StepPart):
+            return StepTable(part.class_of, part.counts)
     return SplitStepTable(tuple(ways))
 
 
@@ -201,8 +215,13 @@ def count_with_route(steps: Steps) -> int:
 def _patterns_of(way: StepWay) -> int:
     total = 1
     for part in way.parts:
+        if isinstance(part, ListedPart):
+            total *= len(part.keys)
+            continue
         reached = (part.counts < NO_ROUTE).astype(np.float64)
         for axis in reversed(range(reached.ndim)):
-            reached = reached @ np.bincount(part.class_of[axis], minlength=reached.shape[-1]).astype(np.float64)
+            reached = reached @ np.bincount(part.class_of[axis], minlength=reached.shape[-1]).astype(
+                np.float64
+            )
         total *= int(reached)
     return total

@@ -24,13 +24,42 @@ class StepPart:
     class_of: tuple[Classes, ...]
     counts: Counts
 
+    def at(self, index: NDArray[np.integer]) -> Counts:
+        """Counts for analogs, shape (n_analogs, all positions of the core) -> (n_analogs,)."""
+        pairs = zip(self.positions, self.class_of, strict=True)
+        return np.asarray(self.counts[tuple(classes[index[:, p]] for p, classes in pairs)], dtype=np.uint8)
+
+
+@dataclass(frozen=True)
+class ListedPart:
+    """The same where few of very many patterns can be made: only those are listed, the others have no route.
+
+    A key is the row of choices at `positions` (ascending) read as one whole number, the last position
+    counting ones, position k having `sizes[k]` choices. `keys` are sorted, each with its count.
+    """
+
+    positions: tuple[int, ...]
+    sizes: tuple[int, ...]
+    keys: NDArray[np.int64]
+    counts: Counts
+
+    def at(self, index: NDArray[np.integer]) -> Counts:
+        """Counts for analogs, shape (n_analogs, all positions of the core) -> (n_analogs,)."""
+        if not len(self.keys):
+            return np.full(len(index), NO_ROUTE, dtype=np.uint8)
+        wanted = np.zeros(len(index), dtype=np.int64)
+        for p, size in zip(self.positions, self.sizes, strict=True):
+            wanted = wanted * size + index[:, p]
+        at = np.minimum(np.searchsorted(self.keys, wanted), len(self.keys) - 1)
+        return np.where(self.keys[at] == wanted, self.counts[at], NO_ROUTE).astype(np.uint8)
+
 
 @dataclass(frozen=True)
 class StepWay:
     """One way to the analogs of a space: `constant` steps plus the counts of independent parts (halves of a dye)."""
 
     constant: int
-    parts: tuple[StepPart, ...]
+    parts: tuple[StepPart | ListedPart, ...]
 
 
 class Steps(Protocol):
@@ -77,7 +106,7 @@ class SplitStepTable:
         for way in self.ways:
             total = np.full(len(index), way.constant, dtype=np.int64)
             for part in way.parts:
-                total += part.counts[tuple(c[index[:, p]] for p, c in zip(part.positions, part.class_of, strict=True))]
+                total += part.at(index)
             best = np.minimum(best, total)
         return np.where(best < NO_ROUTE, best, NO_ROUTE).astype(np.uint8)
 
@@ -114,4 +143,6 @@ class Bottles:
 
     def offers(self, roles: tuple[str, ...], structure: str = "") -> bool:
         """Whether every role, and the structure where one is named, stands on the shelf."""
-        return all(role in self.by_role for role in roles) and (not structure or structure in self.by_structure)
+        return all(role in self.by_role for role in roles) and (
+            not structure or structure in self.by_structure
+        )
