@@ -45,6 +45,9 @@ class Reaction:
     spoils: frozenset[str]  # groups that must not stand anywhere
     needs_acceptor: bool  # exchange only where a strong acceptor stands ortho or para
     all_at_once: bool  # an exchange that converts every such group of the pattern in the same step
+    one_of_two: (
+        bool  # an exchange of one of exactly two such groups, first the one beside the reporting group
+    )
     floods: bool  # a ring substitution that fills every activated place at once
     places: str
     burden: int  # ring substitution: the deactivation it still overcomes
@@ -71,7 +74,10 @@ class Half:
 
 @dataclass(frozen=True, slots=True)
 class Joining:
-    """A step that makes a core from two halves; `cores` says how each core falls into halves."""
+    """A step that makes a core from halves; `cores` says how each core falls into halves.
+
+    `steps` is 1, or 0 where nothing is done and one core is merely seen as another with a fixed group.
+    """
 
     name: str
     title: str
@@ -81,17 +87,24 @@ class Joining:
     cautions: tuple[str, ...]
     source: str
     note: str = ""
+    steps: int = 1
+    place: str = ""
 
 
 @dataclass(frozen=True, slots=True)
 class Protection:
-    """A temporary group on the reporting atom: one step on, one step off."""
+    """A temporary group on the reporting atom: one step on, one step off.
+
+    `spoils_on` and `spoils_off` are groups of the molecule that putting on and taking off would change too.
+    """
 
     name: str
     series: tuple[str, ...]
     steers: str
     roles_on: tuple[str, ...]
     roles_off: tuple[str, ...]
+    spoils_on: frozenset[str]
+    spoils_off: frozenset[str]
     source: str
 
 
@@ -246,6 +259,7 @@ class _Reader:
             "spoils",
             "needs_acceptor",
             "all_at_once",
+            "one_of_two",
             "floods",
             "places",
             "burden",
@@ -284,6 +298,7 @@ class _Reader:
             spoils=self.expand(table.texts("spoils"), table.place("spoils")),
             needs_acceptor=table.flag("needs_acceptor", default=False),
             all_at_once=table.flag("all_at_once", default=False),
+            one_of_two=table.flag("one_of_two", default=False),
             floods=table.flag("floods", default=False),
             places=table.one_of("places", PLACES, default="ortho or para"),
             burden=table.whole("burden", -10, 10, default=0),
@@ -296,7 +311,7 @@ class _Reader:
         )
 
     def joining(self, name: str, table: Table) -> Joining:
-        table.only("title", "roles", "spoils", "cores", "cautions", "source", "note")
+        table.only("title", "roles", "spoils", "cores", "cautions", "source", "note", "steps")
         cores = {}
         for core, spec in self.inner(table.table("cores")):
             spec.only("first", "twin", "second", "third")
@@ -310,6 +325,8 @@ class _Reader:
             tuple(table.texts("cautions")),
             table.text("source", self.default_source),
             table.text("note", default=""),
+            table.whole("steps", 0, 1, default=1),
+            table.place("cores"),
         )
 
     def half(self, table: Table, name: str) -> Half:
@@ -328,12 +345,14 @@ class _Reader:
         )
 
     def protection(self, name: str, table: Table) -> Protection:
-        table.only("series", "steers", "roles_on", "roles_off", "source")
+        table.only("series", "steers", "roles_on", "roles_off", "spoils_on", "spoils_off", "source")
         return Protection(
             name,
             tuple(table.texts("series")),
             table.one_of("steers", STEERING),
             self.role_list(table, "roles_on"),
             self.role_list(table, "roles_off"),
+            self.expand(table.texts("spoils_on"), table.place("spoils_on")),
+            self.expand(table.texts("spoils_off"), table.place("spoils_off")),
             table.text("source", self.default_source),
         )

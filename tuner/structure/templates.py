@@ -1,7 +1,8 @@
-"""Which groups does a bottle bring to a core or to the half of a joining step, and how do places on a ring lie?
+"""Which groups does a bottle bring to a core or to the half of a joining step, and how do places on a ring
+lie?
 
-A template is a SMILES with numbered open positions `[*:n]`. Every way to lay it on the molecule counts, since a
-planner asks for patterns, not for one name of a compound.
+A template is a SMILES with numbered open positions `[*:n]`. Every way to lay it on the molecule counts, since
+a planner asks for patterns, not for one name of a compound.
 """
 
 from __future__ import annotations
@@ -34,13 +35,17 @@ MAX_MATCHES = 500
 class RingPlaces:
     """The substituted places of one carbocyclic aromatic six-ring of a core.
 
-    `distance[a, b]` is 1 (ortho), 2 (meta) or 3 (para), for the labels of open positions, `REPORTING_PLACE` and the names in `carried`;
-    `carried` maps a name to the kind of what the core itself carries there (see `_kind_carried`).
+    `fused` are the names at which another ring is fused on, `benzo` those of them where it is a benzene ring;
+    `distance[a, b]` is 1 (ortho), 2 (meta) or 3 (para), for the labels of open positions, `REPORTING_PLACE`
+    and the names in `carried`; `carried` maps a name to the kind of what the core itself carries there (see
+    `_kind_carried`).
     """
 
     labels: tuple[str, ...]
     carried: Mapping[str, str]
     distance: Mapping[tuple[str, str], int]
+    fused: frozenset[str] = frozenset()
+    benzo: frozenset[str] = frozenset()
 
 
 @dataclass(frozen=True)
@@ -82,7 +87,8 @@ def _laid_on(template: _Template, mol: Mol) -> list[dict[str, str]]:
     found: list[dict[str, str]] = []
     for match in mol.GetSubstructMatches(template.bare, uniquify=False, maxMatches=MAX_MATCHES):
         if any(
-            mol.GetAtomWithIdx(there).GetFormalCharge() != template.bare.GetAtomWithIdx(here).GetFormalCharge()
+            mol.GetAtomWithIdx(there).GetFormalCharge()
+            != template.bare.GetAtomWithIdx(here).GetFormalCharge()
             for here, there in enumerate(match)
         ):
             continue
@@ -103,7 +109,9 @@ def _laid_on(template: _Template, mol: Mol) -> list[dict[str, str]]:
 
 
 @lru_cache(maxsize=65536)
-def _fit(template: str, labels: tuple[tuple[int, str], ...], smiles: str) -> tuple[tuple[tuple[str, str], ...], ...]:
+def _fit(
+    template: str, labels: tuple[tuple[int, str], ...], smiles: str
+) -> tuple[tuple[tuple[str, str], ...], ...]:
     try:
         mol = flat(parse(smiles))
     except StructureError:
@@ -113,8 +121,11 @@ def _fit(template: str, labels: tuple[tuple[int, str], ...], smiles: str) -> tup
     return tuple(tuple(sorted(g.items())) for g in _laid_on(_template(template, labels), mol))
 
 
-def fit_template(template: str, smiles: str, labels: Mapping[int, str] | None = None) -> tuple[dict[str, str], ...]:
-    """Every way to see a compound as a template with groups: label -> `*...`, positions with hydrogen left out.
+def fit_template(
+    template: str, smiles: str, labels: Mapping[int, str] | None = None
+) -> tuple[dict[str, str], ...]:
+    """Every way to see a compound as a template with groups: label -> `*...`, positions with hydrogen left
+    out.
 
     Returns an empty tuple where it does not fit (or the compound cannot be read, or is a salt).
 
@@ -149,6 +160,8 @@ def ring_places(core: Core) -> tuple[RingPlaces, ...]:
             continue
         places: dict[str, int] = {}
         carried: dict[str, str] = {}
+        fused: set[str] = set()
+        benzo: set[str] = set()
         for spot, atom in enumerate(atoms):
             for label in at.get(atom.GetIdx(), ()):
                 places[label] = spot
@@ -159,11 +172,18 @@ def ring_places(core: Core) -> tuple[RingPlaces, ...]:
                 places[name] = spot
                 if name != REPORTING_PLACE:
                     carried[name] = _kind_carried(near, atom)
+                    if form.bare.GetBondBetweenAtoms(atom.GetIdx(), near.GetIdx()).IsInRing():
+                        fused.add(name)
+                        if near.GetIsAromatic() and near.GetAtomicNum() == 6:
+                            benzo.add(name)
             if spot not in places.values():
                 places[f"bare at {spot}"] = spot
                 carried[f"bare at {spot}"] = "H"
-        distance = {(a, b): min((i - j) % 6, (j - i) % 6) for a, i in places.items() for b, j in places.items()}
-        rings.append(RingPlaces(tuple(k for k in places if k in form.open_atoms), carried, distance))
+        distance = {
+            (a, b): min((i - j) % 6, (j - i) % 6) for a, i in places.items() for b, j in places.items()
+        }
+        labels = tuple(k for k in places if k in form.open_atoms)
+        rings.append(RingPlaces(labels, carried, distance, frozenset(fused), frozenset(benzo)))
     return tuple(rings)
 
 
@@ -181,13 +201,15 @@ def _kind_carried(atom: Any, ring_atom: Any) -> str:
     if atom.GetAtomicNum() in (9, 17, 35, 53):
         return {9: "F", 17: "Cl", 35: "Br", 53: "I"}[atom.GetAtomicNum()]
     acceptor = any(
-        b.GetBondTypeAsDouble() >= 2.0 and b.GetOtherAtom(atom).GetAtomicNum() in (7, 8) for b in atom.GetBonds()
+        b.GetBondTypeAsDouble() >= 2.0 and b.GetOtherAtom(atom).GetAtomicNum() in (7, 8)
+        for b in atom.GetBonds()
     )
     return "COMe" if acceptor else "Me"
 
 
 def capped(core: Core, groups: Mapping[str, str], cap: str) -> str:
-    """The molecule with a temporary group on its reporting atom: `cap` is a SMILES whose last atom is bound to it.
+    """The molecule with a temporary group on its reporting atom: `cap` is a SMILES whose last atom is bound
+    to it.
 
     >>> capped(Core("x", "", "Oc1c([*:2])cccc1", "phenol"), {"2": "*Br"}, "C")
     'COc1ccccc1Br'
@@ -195,7 +217,9 @@ def capped(core: Core, groups: Mapping[str, str], cap: str) -> str:
     text = f"{cap}{written(core, groups)}"
     mol = Chem.MolFromSmiles(text)
     if mol is None:
-        raise StructureError(f"'{short(text)}' cannot exist", place=f"core '{core.name}'", remedy="check the cap")
+        raise StructureError(
+            f"'{short(text)}' cannot exist", place=f"core '{core.name}'", remedy="check the cap"
+        )
     return str(Chem.MolToSmiles(flat(mol)))
 
 

@@ -1,6 +1,7 @@
 """Which groups take part in the planning at each position?
 
-The wanted groups, and every group that a chain of exchanges can turn into one of them; no other group can help.
+The wanted groups, and every group that a chain of exchanges can turn into one of them; no other group can
+help.
 """
 
 from __future__ import annotations
@@ -14,10 +15,12 @@ from tuner.library.records import HYDROGEN_SHORT
 from tuner.synthesis.setting import Stage
 
 ACCEPTORS = frozenset(
-    ("NO2", "NO", "CN", "CHO", "COMe", "COEt", "COiPr", "COPh", "COCF3", "CO2Me", "CO2Et", "CO2H", "CONH2", "SO2Me", "SO2Ph", "SO2CF3",
-     "SO2NH2", "SO2NMe2", "SO3H", "SO2Cl", "N=NPh")
+    ("NO2", "NO", "CN", "CHO", "COMe", "COEt", "COiPr", "COPr", "COtBu", "COPh",
+     "COCF3", "CO2Me", "CO2Et", "SO2Me", "SO2Et", "SO2Ph", "SO2CF3", "SO2NMe2", "SO2NEt2")
 )  # fmt: skip
-"""Groups that activate a halide ortho or para to them for nucleophilic substitution (March, 6th ed., chapter 13)."""
+"""Groups that activate a halide ortho or para to them for nucleophilic substitution (March, 6th ed., chapter
+13).
+"""
 
 
 @dataclass(frozen=True)

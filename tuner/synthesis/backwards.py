@@ -47,8 +47,13 @@ class Tracer:
         candidates = {tuple(sorted(p.items())) for p in self._candidates(pattern)}
         near = [dict(p) for p in sorted(candidates) if self.lattice.steps(dict(p), layer) == steps - 1]
         for before in near:
-            found += [Transition(rule, before, layer, dict(pattern), layer) for rule in self._rules(before, pattern, layer)]
-        if self.lattice.steps(pattern, other) == steps - 1:
+            found += [
+                Transition(rule, before, layer, dict(pattern), layer)
+                for rule in self._rules(before, pattern, layer)
+            ]
+        row = self.lattice.frame.row_of(pattern)
+        switch = row is not None and self.lattice.steps(pattern, other) == steps - 1
+        if row is not None and switch and self.maker.may_switch(row, other)[0]:
             found.append(Transition(None, dict(pattern), other, dict(pattern), layer))
         return found
 
@@ -58,9 +63,10 @@ class Tracer:
         here, there = frame.row_of(before), frame.row_of(after)
         if here is None or there is None:
             return []
+        here_key, there_key = int(frame.keys(here)[0]), int(frame.keys(there)[0])
         found: dict[str, Reaction] = {}
-        for rule, _, made in self.maker.outcomes(here, layer):
-            if any(np.array_equal(row, there[0]) for row in made):
+        for rule, _, change in self.maker.moves(here, layer):
+            if np.any(here_key + np.asarray(change) == there_key):
                 found.setdefault(rule.name, rule)
         return list(found.values())
 

@@ -1,7 +1,7 @@
 """How many reactions does it take to make a whole list of analogs, if shared intermediates are made once?
 
-Choosing among equally short routes so that as much as possible is shared is a Steiner problem; the list is short, so routes are taken in
-order, each time the one that adds the fewest new reactions.
+Choosing among equally short routes so that as much as possible is shared is a Steiner problem; the list is
+short, so routes are taken in order, each time the one that adds the fewest new reactions.
 """
 
 from __future__ import annotations
@@ -17,7 +17,9 @@ Reaction = tuple[str, str, str]
 
 @dataclass(frozen=True, slots=True)
 class SharedWork:
-    """`chosen[k]` is the route taken for analog k; counts of reactions alone and together; shared intermediates with how many use them."""
+    """`chosen[k]` is the route taken for analog k; counts of reactions alone and together; shared
+    intermediates with how many use them.
+    """
 
     chosen: tuple[Route | None, ...]
     alone: int
@@ -58,6 +60,8 @@ def share(options: Sequence[Sequence[Route]]) -> SharedWork:
     through: Counter[str] = Counter()
     for route in taken:
         through.update({step.product for step in route.steps if step.product != route.target})
-    shared = sorted(((smiles, n) for smiles, n in through.items() if n > 1), key=lambda pair: (-pair[1], pair[0]))
+    shared = sorted(
+        ((smiles, n) for smiles, n in through.items() if n > 1), key=lambda pair: (-pair[1], pair[0])
+    )
     alone = sum(len(route.steps) for route in taken)
     return SharedWork(tuple(chosen), alone, len(done), tuple(shared))

@@ -45,7 +45,9 @@ def step_part(
                 column[alphabet.index[short]] = k
         place.append(column)
     index = (
-        np.stack([place[axis][rows[:, axis]] for axis in range(rows.shape[1])], axis=1) if len(rows) else rows
+        np.stack([place[axis][rows[:, axis]] for axis in range(rows.shape[1])], axis=1)
+        if len(rows)
+        else np.zeros(rows.shape, dtype=np.int64)
     )
     kept = (index >= 0).all(axis=1) if len(rows) else np.zeros(0, dtype=bool)
     index, counts = index[kept], counts[kept]

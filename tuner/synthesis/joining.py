@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping, Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
+
+import numpy as np
 
 from tuner.library.reactions import Half, Joining
 from tuner.library.records import HYDROGEN_SHORT, Core
@@ -15,24 +17,38 @@ from tuner.synthesis.setting import Pattern, Stage, Workshop
 
 @dataclass(frozen=True)
 class HalfPlan:
-    """One half of a joining: its own patterns by the pattern that they give on the dye, with least step counts."""
+    """One half of a joining: its own patterns by the pattern that they give on the dye, with least step
+    counts.
+    """
 
     half: Half
     labels: tuple[str, ...]  # labels on the dye that this half decides (both arms, where it is doubled)
     counts: Mapping[tuple[tuple[str, str], ...], int]  # pattern on the dye -> steps
-    own: Mapping[tuple[tuple[str, str], ...], tuple[tuple[str, str], ...]]  # pattern on the dye -> pattern of the half
+    own: Mapping[
+        tuple[tuple[str, str], ...], tuple[tuple[str, str], ...]
+    ]  # pattern on the dye -> pattern of the half
     lattice: Lattice | None  # None: a bottle
     bottles: Mapping[tuple[tuple[str, str], ...], str]  # pattern of the half -> name of the bottle
 
 
-def core_lattice(workshop: Workshop, core: Core, wanted: Iterable[str], max_steps: int) -> Lattice:
-    """Step counts over the patterns of a core that is built from bottles of its own kind."""
+def core_lattice(
+    workshop: Workshop, core: Core, wanted: Mapping[str, frozenset[str]], max_steps: int
+) -> Lattice:
+    """Step counts over the patterns of a core that is built from bottles of its own kind.
+
+    `wanted` names for each label of the core the groups that matter in the end; labels left out bear hydrogen
+    then.
+    """
     stage = Stage(workshop, core)
     prepared = prepare_core(core)
     nitrogen = tuple(prepared.slot(label).relation == "nitrogen" for label in prepared.open_labels)
-    frame = Frame(prepared.open_labels, nitrogen, alphabet(stage, leading_to(stage, wanted)))
+    frame = Frame(
+        prepared.open_labels,
+        nitrogen,
+        alphabet(stage, leading_to(stage, frozenset().union(*wanted.values()))),
+    )
     start = [(dict(pattern), 0) for pattern in workshop.bought(core)]
-    return relax(stage, frame, start, max_steps)
+    return relax(stage, frame, start, max_steps, frame.holding(wanted))
 
 
 def plan_halves(
@@ -66,10 +82,17 @@ def _plan_half(
         lattice = None
     else:
         core = workshop.library.cores[half.core]
-        groups = {HYDROGEN_SHORT, *half.fixed.values()}.union(*(wanted.get(label, frozenset()) for label in half.labels))
-        lattice = core_lattice(workshop, core, groups, max_steps)
+        needed = {
+            there: wanted.get(here, frozenset()) | {HYDROGEN_SHORT} for here, there in half.labels.items()
+        }
+        needed |= {label: frozenset((short,)) for label, short in half.fixed.items()}
+        lattice = core_lattice(workshop, core, needed, max_steps)
         bottles = workshop.bought(core)
         rows, counts = lattice.reached()
+        fits = np.ones(len(rows), dtype=bool)
+        for axis, allowed in enumerate(lattice.frame.holding(needed)):
+            fits &= allowed[rows[:, axis]]
+        rows, counts = rows[fits], counts[fits]
         patterns = (tuple(sorted(lattice.frame.pattern_of(row).items())) for row in rows)
         found = {pattern: (pattern, int(n)) for pattern, n in zip(patterns, counts, strict=True)}
     counts_by: dict[tuple[tuple[str, str], ...], int] = {}
@@ -109,8 +132,10 @@ def _doubled(plan: HalfPlan, twin: Half) -> HalfPlan:
 
 
 def joined(plans: Sequence[HalfPlan]) -> dict[tuple[tuple[str, str], ...], int]:
-    """Patterns of the dye right after joining with the steps of all halves together, the joining step included."""
-    found: dict[tuple[tuple[str, str], ...], int] = {(): 1}
+    """Patterns of the dye right after joining with the steps of all halves together, the joining step left
+    out.
+    """
+    found: dict[tuple[tuple[str, str], ...], int] = {(): 0}
     for plan in plans:
         found = {
             tuple(sorted((*one, *two))): n + m for one, n in found.items() for two, m in plan.counts.items()

@@ -1,8 +1,8 @@
 """How many steps does every analog of a core space take, by whatever way is shortest?
 
-A core is bought as it is, changed group by group, or joined from halves. Small cores get one lattice in which all of this meets. A dye with
-many positions gets one part for each half: after the joining only single groups are exchanged, and no exchange looks at the other half,
-so the least counts of the halves add up.
+A core is bought as it is, changed group by group, or joined from halves. Small cores get one lattice in which
+all of this meets. A dye with many positions gets one part for each half: after the joining only single groups
+are exchanged, and no exchange looks at the other half, so the least counts of the halves add up.
 """
 
 from __future__ import annotations
@@ -107,7 +107,8 @@ def _in_one_piece(
     groups = leading_to(stage, {short for own in listed.values() for short in own})
     frame = Frame(labels, _nitrogen(core, labels), alphabet(stage, groups))
     wanted = dict.fromkeys(labels, groups)
-    ways, starts = [], {}
+    ways: list[JoinedWay] = []
+    starts: dict[tuple[tuple[str, str], ...], int] = {}
     for joining in halved:
         halves = plan_halves(workshop, joining, core, wanted, max_steps - joining.steps)
         if halves is not None:
@@ -208,7 +209,9 @@ def makeable(plan: CorePlan) -> dict[str, frozenset[str]]:
 
 
 def count_with_route(steps: Steps) -> int:
-    """Number of patterns that some way reaches, the ways counted apart (an upper bound where there are several)."""
+    """Number of patterns that some way reaches, the ways counted apart (an upper bound where there are
+    several).
+    """
     return sum(_patterns_of(way) for way in steps.ways)
 
 

@@ -1,7 +1,8 @@
 """Which one purchase would bring more analogs of a space within reach?
 
-Every bottle of the shipped shelves that is not on the user's shelf is tried. A bottle that only serves as starting material is tried on
-its own lattice; one that opens rules, or brings a group to a rule, needs the whole space to be planned anew.
+Every bottle of the shipped shelves that is not on the user's shelf is tried. A bottle that only serves as
+starting material is tried on its own lattice; one that opens rules, or brings a group to a rule, needs the
+whole space to be planned anew.
 """
 
 from __future__ import annotations

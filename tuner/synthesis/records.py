@@ -56,7 +56,9 @@ class ListedPart:
 
 @dataclass(frozen=True)
 class StepWay:
-    """One way to the analogs of a space: `constant` steps plus the counts of independent parts (halves of a dye)."""
+    """One way to the analogs of a space: `constant` steps plus the counts of independent parts (halves of a
+    dye).
+    """
 
     constant: int
     parts: tuple[StepPart | ListedPart, ...]

@@ -1,9 +1,12 @@
 """Where does an electrophile go on a benzene ring?
 
-Evaluated for all patterns of one ring at once. Every place of the ring bears a code (how it steers, and whether it is large); the
-rules are those of any textbook on aromatic substitution: the strongest donor directs to its ortho and para places; without a donor the
-acceptors direct to meta; a place beside a very large group, or between two groups, is shut; the acceptors and donors of the ring add up
-to a burden that the reagent must overcome.
+Evaluated for all patterns of one ring at once. Every place of the ring bears a code (how it steers, and
+whether it is large); the rules are those of any textbook on aromatic substitution: the strongest donor
+directs to its ortho and para places; without a donor the acceptors direct to meta; a place beside a very
+large group, or between two groups, is shut; the acceptors and donors of the ring add up to a burden that the
+reagent must overcome. Where another ring is fused on, the bond to it shuts no place; and where that is a
+benzene ring, a donor that has an ortho place beside the fusion sends nothing to its other ortho place (1
+before 3 in 2-naphthol).
 """
 
 from __future__ import annotations
@@ -43,6 +46,8 @@ class RingView:
     distance: Mapping[tuple[str, str], int]
     codes: Mapping[str, Sequence[Code]]  # open label -> the codes, in the order of the axis
     fixed: Mapping[str, Code]  # carried places and the reporting group
+    fused: frozenset[str] = frozenset()  # names in `fixed` at which another ring is fused on
+    benzo: frozenset[str] = frozenset()  # those of them where that is a benzene ring
 
     def _axis(self, label: str, values: Sequence[float]) -> NDArray[np.float64]:
         axes = self.labels
@@ -66,7 +71,8 @@ class RingView:
         return (*self.labels, *self.fixed)
 
     def attacked(self, rule: Reaction) -> dict[str, Mask]:
-        """For each open label of the ring, over all patterns (one axis per label): whether the rule attacks there.
+        """For each open label of the ring, over all patterns (one axis per label): whether the rule attacks
+        there.
 
         The answer stands only where the label itself bears hydrogen.
         """
@@ -90,6 +96,8 @@ class RingView:
                 leads = leads & ~self._para_free(d)
             if distance[p, d] == 3 and rule.places == "ortho":
                 continue
+            if distance[p, d] == 1 and self._second_to_alpha(p, d):
+                continue
             near = near | leads
         meta = np.zeros_like(near)
         other = np.zeros_like(near)
@@ -103,6 +111,15 @@ class RingView:
                 other = other | acceptor
         nothing = top == 0
         return np.asarray(near | (nothing & ~other & (meta | ~other) & (rule.places != "ortho")))
+
+    def _second_to_alpha(self, p: str, d: str) -> bool:
+        """Whether `d` has another ortho place beside a benzo fusion, and `p` is not beside one."""
+
+        def alpha(place: str) -> bool:
+            return any(self.distance[place, f] == 1 for f in self.benzo)
+
+        others = [q for q in self.names if q != p and q not in self.benzo and self.distance[d, q] == 1]
+        return not alpha(p) and any(alpha(q) for q in others)
 
     def _para_free(self, d: str) -> Mask:
         """Whether the place para to `d` bears hydrogen and is not shut."""
@@ -122,5 +139,5 @@ class RingView:
             return large
         both = np.ones([1] * len(self.labels), dtype=bool)
         for d in beside:
-            both = both & ~self._flag(d, "empty")
+            both = both & ~self._flag(d, "empty") & (d not in self.fused)
         return np.asarray(large | both)

@@ -1,4 +1,6 @@
-"""How is one analog made? A shortest way in words: bottles, steps in order, intermediates, reagents, cautions."""
+"""How is one analog made? A shortest way in words: bottles, steps in order, intermediates, reagents,
+cautions.
+"""
 
 from __future__ import annotations
 
@@ -90,7 +92,9 @@ class _Writer:
         note = rule.note
         if rule.kind == "ring substitution" and rule.places == "ortho or para" and not rule.floods:
             note = note or MIXTURE_NOTE
-        return Step(rule.name, rule.title, before, after, self.reagents(rule.roles, structure), rule.cautions, note)
+        return Step(
+            rule.name, rule.title, before, after, self.reagents(rule.roles, structure), rule.cautions, note
+        )
 
     @staticmethod
     def _changed(transition: Transition) -> set[str]:
@@ -110,7 +114,9 @@ class _Writer:
 
     # ------------------------------------------------------------------ ways
 
-    def on_lattice(self, core: Core, lattice: Lattice, pattern: Pattern, most: int) -> list[tuple[Pattern, tuple[Step, ...]]]:
+    def on_lattice(
+        self, core: Core, lattice: Lattice, pattern: Pattern, most: int
+    ) -> list[tuple[Pattern, tuple[Step, ...]]]:
         """Ways on one lattice: the pattern that each starts from, and its steps."""
         found = []
         for way in Tracer(lattice).ways(pattern, FREE, most):
@@ -137,7 +143,8 @@ class _Writer:
     def in_parts(self, pattern: Pattern, most: int) -> list[_Draft]:
         """Routes where the halves of a dye are planned apart; only the shortest ways are kept."""
         best, drafts = NO_ROUTE, list[_Draft]()
-        for way in (*self.plan.joinings, *self.plan.bought):
+        ways: tuple[JoinedWay | BoughtWay, ...] = (*self.plan.joinings, *self.plan.bought)
+        for way in ways:
             steps = _count(way, pattern)
             if steps > best or steps >= NO_ROUTE or steps > self.plan.max_steps:
                 continue
@@ -168,7 +175,9 @@ class _Writer:
                 more = tuple(
                     self.step(
                         self.plan.core,
-                        Transition(t.rule, {**rest, **t.before}, t.before_layer, {**rest, **t.after}, t.after_layer),
+                        Transition(
+                            t.rule, {**rest, **t.before}, t.before_layer, {**rest, **t.after}, t.after_layer
+                        ),
                     )
                     for t in way
                 )
@@ -195,7 +204,7 @@ class _Writer:
     def _joined(self, way: JoinedWay, pattern: Pattern, most: int, steps: int) -> list[_Draft]:
         """Routes to a dye right after joining."""
         parts: list[list[tuple[str, _Draft]]] = []
-        total = 1
+        total = way.joining.steps
         if not set(pattern) <= {label for half in way.halves for label in half.labels}:
             return []
         for half in way.halves:
@@ -216,6 +225,8 @@ class _Writer:
         return [self._with_joining(way.joining, names, d, pattern) for names, d in drafts]
 
     def _with_joining(self, joining: Joining, halves: list[str], draft: _Draft, pattern: Pattern) -> _Draft:
+        if not joining.steps:
+            return draft
         product = self.molecule(self.plan.core, pattern, FREE)
         reagents = self.reagents(joining.roles)
         step = Step(
@@ -240,7 +251,7 @@ class _Writer:
 
 def _count(way: JoinedWay | BoughtWay, pattern: Mapping[str, str]) -> int:
     """Steps of a pattern by one way."""
-    total = 1 if isinstance(way, JoinedWay) else 0
+    total = way.joining.steps if isinstance(way, JoinedWay) else 0
     placed: set[str] = set()
     for lattice in way.finished:
         if lattice is not None:

@@ -1,4 +1,6 @@
-"""What do the rules see of a core: its rings, what it carries, how its reporting group stands to each rule, and what the shelf offers?"""
+"""What do the rules see of a core: its rings, what it carries, how its reporting group stands to each rule,
+and what the shelf offers?
+"""
 
 from __future__ import annotations
 
@@ -135,9 +137,12 @@ class Stage:
 
     @cached_property
     def carried(self) -> frozenset[str]:
-        """Kinds of groups that the core itself carries, hydrogens left out."""
+        """Kinds of groups that the core itself carries, hydrogens and fused rings left out."""
         return frozenset(
-            kind for ring in ring_places(self.core) for kind in ring.carried.values() if kind != HYDROGEN_SHORT
+            kind
+            for ring in ring_places(self.core)
+            for name, kind in ring.carried.items()
+            if kind != HYDROGEN_SHORT and name not in ring.fused
         )
 
     @cached_property
@@ -162,6 +167,8 @@ class Stage:
             return ()
         if self.finishing and rule.kind != "exchange":
             return ()
+        if (rule.all_at_once or rule.one_of_two) and self.carried & set(rule.takes):
+            return ()  # it would change what makes the core
         manner = rule.on_phenol
         if self.core.series in AMINE_SERIES:
             manner = rule.on_amine
