@@ -108,6 +108,11 @@ def _laid_on(template: _Template, mol: Mol) -> list[dict[str, str]]:
     return sorted(found, key=lambda g: sorted(g.items()))
 
 
+def _organic(mol: Mol) -> bool:
+    """Whether a part of a compound is more than a counter-ion."""
+    return any(atom.GetAtomicNum() == 6 for atom in mol.GetAtoms())
+
+
 @lru_cache(maxsize=65536)
 def _fit(
     template: str, labels: tuple[tuple[int, str], ...], smiles: str
@@ -116,8 +121,10 @@ def _fit(
         mol = flat(parse(smiles))
     except StructureError:
         return ()
-    if len(Chem.GetMolFrags(mol)) > 1:
+    parts = [part for part in Chem.GetMolFrags(mol, asMols=True) if _organic(part)]
+    if len(parts) != 1:
         return ()
+    mol = parts[0]
     return tuple(tuple(sorted(g.items())) for g in _laid_on(_template(template, labels), mol))
 
 
@@ -127,7 +134,8 @@ def fit_template(
     """Every way to see a compound as a template with groups: label -> `*...`, positions with hydrogen left
     out.
 
-    Returns an empty tuple where it does not fit (or the compound cannot be read, or is a salt).
+    Counter-ions are left aside. Returns an empty tuple where the template does not fit (or the compound
+    cannot be read, or has two organic parts).
 
     >>> fit_template("O=C(O)c1c([*:2])cccc1", "Cc1ccccc1C(=O)O")
     ({'2': '*C'},)

@@ -1,4 +1,4 @@
-"""From which patterns does one step lead to a given pattern? The lattice read backwards, for routes in words."""
+"""From which patterns does one step lead to a given one? The lattice read backwards, for routes in words."""
 
 from __future__ import annotations
 

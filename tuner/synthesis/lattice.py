@@ -64,7 +64,7 @@ class Frame:
 
 @dataclass(frozen=True)
 class Lattice:
-    """Least step counts of the patterns that can be reached: sorted `keys[layer]` with their `counts[layer]`."""
+    """Least step counts of what can be reached: sorted `keys[layer]` with their `counts[layer]`."""
 
     stage: Stage
     frame: Frame
@@ -113,11 +113,13 @@ class _Sparse:
         if not len(self.keys):
             return keys
         at = np.minimum(np.searchsorted(self.keys, keys), len(self.keys) - 1)
-        return keys[(self.keys[at] != keys) | (self.counts[at] > level)]
+        fresh: Keys = keys[(self.keys[at] != keys) | (self.counts[at] > level)]
+        return fresh
 
     def at_level(self, level: int) -> Keys:
         """Keys whose count is this level."""
-        return self.keys[self.counts == level]
+        here: Keys = self.keys[self.counts == level]
+        return here
 
     def listed(self) -> tuple[Keys, NDArray[np.uint8]]:
         """All keys in order, with their counts."""
@@ -140,8 +142,7 @@ class _Dense:
 
     def at_level(self, level: int) -> Keys:
         """Keys whose count is this level."""
-        keys: Keys = np.flatnonzero(self.counts == level)
-        return keys
+        return np.asarray(np.flatnonzero(self.counts == level), dtype=np.int64)
 
     def listed(self) -> tuple[Keys, NDArray[np.uint8]]:
         """All keys in order, with their counts."""

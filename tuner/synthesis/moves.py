@@ -174,7 +174,8 @@ class MoveMaker:
         fits = taken.sum(axis=1) == (2 if table.rule.one_of_two else 1)
         if table.rule.one_of_two:
             beside: Mask = np.asarray(taken & self._beside_reporting)
-            taken = np.where(beside.any(axis=1)[:, None], beside, taken)
+            some = np.asarray(beside.any(axis=1))
+            taken = np.where(some[:, None], beside, taken)
         for axis in self.on_ring:
             yield from self._put(table, axis, np.flatnonzero(fits & taken[:, axis]), rows)
 
@@ -233,7 +234,7 @@ class MoveMaker:
         return self._attacks[key]
 
     def _richest(self, rows: Rows, layer: int) -> list[Mask]:
-        """For each ring the rows on which no other ring is richer in electrons; an electrophile goes there."""
+        """For each ring the rows where no other ring is richer in electrons; electrophiles go there."""
         if len(self.rings) == 1:
             return [np.ones(len(rows), dtype=bool)]
         share = np.array([BURDEN[self.stage.workshop.steering[short]] for short in self.alphabet.shorts])
@@ -249,6 +250,7 @@ class MoveMaker:
     ) -> Iterator[tuple[NDArray[np.int64], NDArray[np.int64] | int]]:
         """Hydrogen becomes a group where the directing rules allow."""
         _, number_of = self._codes
+        span = np.zeros(len(rows), dtype=np.int64)
         for number, (ring, richest) in enumerate(zip(self.rings, self._richest(rows, layer), strict=True)):
             attacked = self._attacked(table.rule, number, ring, layer)
             axes = [self.labels.index(label) for label in attacked]
@@ -260,8 +262,16 @@ class MoveMaker:
             if not table.rule.floods:
                 for axis, hit in hits.items():
                     yield from self._put(table, axis, np.flatnonzero(hit), rows)
-            elif (REPORTING_PLACE, REPORTING_PLACE) in ring.distance and layer == FREE:
-                span = sum(hit.astype(np.int64) * self.weights[axis] for axis, hit in hits.items())
-                at = np.flatnonzero(span)
-                for made in table.gives:
-                    yield at, made * np.asarray(span)[at]
+            elif layer == FREE and self._is_arm(ring):
+                for axis, hit in hits.items():
+                    span += hit.astype(np.int64) * self.weights[axis]
+        if table.rule.floods:
+            at = np.flatnonzero(span)
+            for made in table.gives:
+                yield at, made * span[at]
+
+    def _is_arm(self, ring: RingPlaces) -> bool:
+        """Whether a ring bears the reporting group, or on a dye with two arms its twin."""
+        if (REPORTING_PLACE, REPORTING_PLACE) in ring.distance:
+            return True
+        return self.stage.twin and "OH" in ring.carried.values()

@@ -130,7 +130,8 @@ def _in_parts(
     halved: Sequence[Joining],
     max_steps: int,
 ) -> CorePlan:
-    stage = Stage(workshop, core, finishing=True)
+    twin = any(half.twin for joining in halved for half in joining.cores[core.name])
+    stage = Stage(workshop, core, finishing=True, twin=twin)
     wanted = {label: leading_to(stage, own) for label, own in listed.items()}
     order = list(listed)
     joinings: list[JoinedWay] = []

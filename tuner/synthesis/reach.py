@@ -42,7 +42,7 @@ def opened_rules(workshop: Workshop, item: StockItem) -> tuple[str, ...]:
 def worthwhile(
     workshop: Workshop, plans: Sequence[CorePlan], pool: Iterable[StockItem]
 ) -> list[tuple[StockItem, tuple[str, ...]]]:
-    """Bottles of the pool that could matter: they open a rule, or are starting material for one of the cores."""
+    """Bottles of the pool that could matter: they open a rule, or a core can be made from them."""
     have = {item.smiles for item in workshop.shelf}
     found = []
     for item in pool:

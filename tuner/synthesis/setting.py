@@ -124,11 +124,16 @@ class Workshop:
 
 @dataclass(frozen=True)
 class Stage:
-    """One core as the rules see it. `finishing`: a joined dye, whose rings are left alone."""
+    """One core as the rules see it.
+
+    `finishing`: a joined dye, whose rings are left alone; only where both arms are alike (`twin`) and so lie
+    in one lattice, every activated place of both may be filled at once.
+    """
 
     workshop: Workshop
     core: Core
     finishing: bool = False
+    twin: bool = False
 
     @cached_property
     def rings(self) -> tuple[object, ...]:
@@ -165,7 +170,7 @@ class Stage:
         """Layers in which the rule may be used on this core; none where the core cannot meet it."""
         if set(rule.tags) & set(self.core.destroyed_by) or rule.spoils & self.carried:
             return ()
-        if self.finishing and rule.kind != "exchange":
+        if self.finishing and rule.kind != "exchange" and not (self.twin and rule.floods):
             return ()
         if (rule.all_at_once or rule.one_of_two) and self.carried & set(rule.takes):
             return ()  # it would change what makes the core
