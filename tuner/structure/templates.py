@@ -162,10 +162,9 @@ def ring_places(core: Core) -> tuple[RingPlaces, ...]:
     for label, atom in form.open_atoms.items():
         at.setdefault(atom, []).append(label)
     rings = []
-    for ring in form.bare.GetRingInfo().AtomRings():
+    benzene = [ring for ring in form.bare.GetRingInfo().AtomRings() if _is_benzene(form.bare, ring)]
+    for ring in benzene:
         atoms = [form.bare.GetAtomWithIdx(k) for k in ring]
-        if len(ring) != 6 or not all(a.GetIsAromatic() and a.GetAtomicNum() == 6 for a in atoms):
-            continue
         places: dict[str, int] = {}
         carried: dict[str, str] = {}
         fused: set[str] = set()
@@ -182,7 +181,7 @@ def ring_places(core: Core) -> tuple[RingPlaces, ...]:
                     carried[name] = _kind_carried(near, atom)
                     if form.bare.GetBondBetweenAtoms(atom.GetIdx(), near.GetIdx()).IsInRing():
                         fused.add(name)
-                        if near.GetIsAromatic() and near.GetAtomicNum() == 6:
+                        if any({atom.GetIdx(), near.GetIdx()} <= set(other) for other in benzene):
                             benzo.add(name)
             if spot not in places.values():
                 places[f"bare at {spot}"] = spot
@@ -193,6 +192,12 @@ def ring_places(core: Core) -> tuple[RingPlaces, ...]:
         labels = tuple(k for k in places if k in form.open_atoms)
         rings.append(RingPlaces(labels, carried, distance, frozenset(fused), frozenset(benzo)))
     return tuple(rings)
+
+
+def _is_benzene(mol: Mol, ring: tuple[int, ...]) -> bool:
+    """Whether a ring is aromatic, of six carbon atoms."""
+    atoms = [mol.GetAtomWithIdx(k) for k in ring]
+    return len(ring) == 6 and all(a.GetIsAromatic() and a.GetAtomicNum() == 6 for a in atoms)
 
 
 def _kind_carried(atom: Any, ring_atom: Any) -> str:
