@@ -29,7 +29,9 @@ class Certificate:
         """
         exact = self.resolution_pka < 1e-6
         front = "exact" if exact else f"exact for offsets in steps of {self.resolution_pka:.2g} pKa units"
-        rest = "" if self.bound == float("-inf") else f" No unlisted analog scores above {self.bound:.3f}."
+        rest = (
+            "" if self.bound == float("-inf") else f" No analog beyond those scores above {self.bound:.3f}."
+        )
         return (
             f"All {self.covered:,} patterns are covered: each was evaluated, or an admissible bound shows "
             f"that it is no better than what is listed. The trade-off front is {front}, the best by score "
