@@ -10,7 +10,9 @@ import signal
 import pytest
 
 from tests.search.synthetic import large_tables
+from tests.search.test_run import brief
 from tuner.errors import SearchError
+from tuner.search import design
 from tuner.search.certified import search_certified
 from tuner.search.cluster import search_on_cluster
 from tuner.search.exact import Search, search_exact
@@ -63,3 +65,11 @@ def test_a_cluster_that_is_not_there_is_named_in_one_line(monkeypatch):
     search = Search((large_tables(2, 5),), Goal(7.5, 0.2), 5)
     with pytest.raises(SearchError, match=r"no scheduler answers at tcp://127\.0\.0\.1:9.*check the address"):
         search_on_cluster(search, "tcp://127.0.0.1:9")
+
+
+def test_a_whole_run_gives_the_same_rows_on_a_cluster(cluster, tmp_path):
+    plain = brief(tmp_path)
+    shared = design(plain, scheduler=cluster.scheduler_address)
+    alone = design(plain)
+    assert shared.candidates == alone.candidates
+    assert (shared.front, shared.cloud, shared.certificate) == (alone.front, alone.cloud, alone.certificate)
