@@ -158,48 +158,34 @@ class _Writer:
 
     def _from_bottle(self, way: BoughtWay, pattern: Pattern, most: int) -> list[_Draft]:
         """Routes from a bought dye: the changes on one half, then those on the other."""
-        drafts = [(dict(way.pattern), tuple[Step, ...]())]
-        for lattice in way.finished:
-            drafts = self._and_then(drafts, lattice, pattern, most)
-        return [_Draft((way.bottle,), steps) for _, steps in drafts][:most]
-
-    def _and_then(
-        self, drafts: list[tuple[Pattern, tuple[Step, ...]]], lattice: Lattice, pattern: Pattern, most: int
-    ) -> list[tuple[Pattern, tuple[Step, ...]]]:
-        """Append what is done on some positions of the dye, the rest as it stands."""
-        own = {label: g for label, g in pattern.items() if label in lattice.frame.labels}
-        found = []
-        for now, steps in drafts:
-            rest = {label: g for label, g in now.items() if label not in lattice.frame.labels}
-            for way in Tracer(lattice).ways(own, FREE, most):
-                more = tuple(
-                    self.step(
-                        self.plan.core,
-                        Transition(
-                            t.rule, {**rest, **t.before}, t.before_layer, {**rest, **t.after}, t.after_layer
-                        ),
-                    )
-                    for t in way
-                )
-                found.append(({**rest, **own}, (*steps, *more)))
-        return found[:most]
+        return [
+            _Draft((way.bottle,), self._changes(dict(way.pattern), finish))
+            for finish in _finishes(way.finished, pattern, most)
+        ]
 
     def _finished(self, way: JoinedWay, pattern: Pattern, most: int) -> list[_Draft]:
         """Routes over a joining: halves, joining, then what is changed on the dye."""
-        starts: Pattern = {}
-        for lattice in way.finished:
-            if lattice is not None:
-                own = {label: g for label, g in pattern.items() if label in lattice.frame.labels}
-                ways = Tracer(lattice).ways(own, FREE, 1)
-                starts.update(ways[0][0].before if ways and ways[0] else own)
-        drafts = []
-        for head in self._joined(way, starts, most, NO_ROUTE):
-            state = [(dict(starts), head.steps)]
-            for lattice in way.finished:
-                if lattice is not None:
-                    state = self._and_then(state, lattice, pattern, most)
-            drafts += [_Draft(head.bottles, steps) for _, steps in state]
+        drafts: list[_Draft] = []
+        for finish in _finishes([x for x in way.finished if x is not None], pattern, most):
+            starts: Pattern = {}
+            for part in finish:
+                starts.update(part.ways[0].before if part.ways else part.end)
+            steps = self._changes(starts, finish)
+            heads = self._joined(way, starts, most, NO_ROUTE)
+            drafts += [_Draft(head.bottles, (*head.steps, *steps)) for head in heads]
         return drafts[:most]
+
+    def _changes(self, start: Pattern, finish: Sequence[_Finish]) -> tuple[Step, ...]:
+        """Steps on the finished dye, part by part, the other positions as they stand."""
+        now, steps = dict(start), list[Step]()
+        for part in finish:
+            rest = {label: g for label, g in now.items() if label not in part.labels}
+            for t in part.ways:
+                before, after = {**rest, **t.before}, {**rest, **t.after}
+                whole = Transition(t.rule, before, t.before_layer, after, t.after_layer)
+                steps.append(self.step(self.plan.core, whole))
+            now = {**rest, **part.end}
+        return tuple(steps)
 
     def _joined(self, way: JoinedWay, pattern: Pattern, most: int, steps: int) -> list[_Draft]:
         """Routes to a dye right after joining."""
@@ -247,6 +233,26 @@ class _Writer:
 
     def _template_molecule(self, half: Half, own: Pattern) -> str:
         return filled(half.template, self.groups(own))
+
+
+@dataclass(frozen=True)
+class _Finish:
+    """What is done on some positions of a finished dye: a shortest way, and the pattern that it ends in."""
+
+    labels: tuple[str, ...]
+    ways: tuple[Transition, ...]
+    end: Pattern
+
+
+def _finishes(lattices: Sequence[Lattice], pattern: Pattern, most: int) -> list[list[_Finish]]:
+    """Combinations of shortest ways, one for each lattice."""
+    found: list[list[_Finish]] = [[]]
+    for lattice in lattices:
+        labels = lattice.frame.labels
+        own = {label: g for label, g in pattern.items() if label in labels}
+        ways = [_Finish(labels, tuple(way), own) for way in Tracer(lattice).ways(own, FREE, most)]
+        found = [[*done, way] for done in found for way in ways][:most]
+    return found
 
 
 def _count(way: JoinedWay | BoughtWay, pattern: Mapping[str, str]) -> int:
