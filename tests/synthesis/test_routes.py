@@ -1,8 +1,10 @@
-"""Are routes chemistry that one can follow: every step from a molecule at hand to the next, changing only what it says?"""
+"""Are routes chemistry that one can follow: every step from a molecule at hand to the next, changing only
+what it says?
+"""
 
 from __future__ import annotations
 
-from functools import lru_cache
+from functools import cache, lru_cache
 
 import numpy as np
 import pytest
@@ -42,7 +44,7 @@ def bench() -> Workshop:
     return Workshop(library(), book(), tuple(shipped_stock(canonical_smiles)))
 
 
-@lru_cache(maxsize=None)
+@cache
 def sampled(name: str) -> tuple[tuple[int, Route], ...]:
     """Routes to analogs of one core, spread over all that can be made, each with the planner's count."""
     core = library().cores[name]
@@ -118,7 +120,9 @@ def capped(route: Route, step: Step) -> bool:
 
 
 def explains(core: Core, rule: Reaction, step: Step) -> bool:
-    """Whether both molecules are patterns of the core that differ only in groups that the rule takes and gives."""
+    """Whether both molecules are patterns of the core that differ only in groups that the rule takes and
+    gives.
+    """
     takes = set(rule.takes) or {HYDROGEN_SHORT}
     for one in fit_core(core, step.substrate):
         for two in fit_core(core, step.product):

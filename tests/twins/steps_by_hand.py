@@ -1,7 +1,8 @@
 """A second planner for the tests: the rules read anew, one pattern at a time, with plain loops and no arrays.
 
-Patterns are dicts of label -> short name. The geometry of each core is written down by hand: six places around the
-ring, each of them a label, what the core carries there, a bond to a fused ring, or the reporting group.
+Patterns are dicts of label -> short name. The geometry of each core is written down by hand: six places
+around the ring, each of them a label, what the core carries there, a bond to a fused ring, or the reporting
+group.
 """
 
 from __future__ import annotations
@@ -26,14 +27,16 @@ MOST_NITRO_GROUPS = 2
 
 @dataclass(frozen=True)
 class Place:
-    """One place of a ring. `kind`: label, carried, fused or reporting; `name`: the label, or the group carried."""
+    """One place of a ring. `kind`: label, carried, fused or reporting; `name`: the label, or the group
+    carried.
+    """
 
     kind: str
     name: str = ""
 
 
 def around(text: str) -> tuple[Place, ...]:
-    """Six places from words: `OH!` reporting, `2` a label, `=NO2` carried, `~Me` a fused ring, `.` hydrogen."""
+    """Six places: `OH!` reporting, `2` a label, `=NO2` carried, `~Me` a fused ring, `.` hydrogen."""
     found = []
     for word in text.split():
         if word.endswith("!"):
@@ -52,7 +55,7 @@ def around(text: str) -> tuple[Place, ...]:
 
 @dataclass(frozen=True)
 class HandCore:
-    """What the rules have to know of a core. `finishing`: a joined dye, on which groups are only exchanged."""
+    """What the rules know of a core. `finishing`: a joined dye, on which groups are only exchanged."""
 
     series: str
     rings: tuple[tuple[Place, ...], ...]
@@ -83,7 +86,9 @@ class HandPlanner:
     # ------------------------------------------------------------------ what may be used at all
 
     def usable(self, rule: Reaction) -> bool:
-        """Roles on the shelf, conditions that the core stands, nothing that the core itself carries in the way."""
+        """Roles on the shelf, conditions that the core stands, nothing that the core itself carries in the
+        way.
+        """
         carried = {p.name for ring in self.core.rings for p in ring if p.kind == "carried" and p.name != "H"}
         if not set(rule.roles) <= self.roles or set(rule.tags) & set(self.core.destroyed_by):
             return False
@@ -95,7 +100,7 @@ class HandPlanner:
         """The first temporary group that fits and can be put on and taken off."""
         for way in ways:
             fits = self.core.series in way.series and not self.core.finishing
-            if fits and set((*way.roles_on, *way.roles_off)) <= self.roles:
+            if fits and {*way.roles_on, *way.roles_off} <= self.roles:
                 return way
         return None
 

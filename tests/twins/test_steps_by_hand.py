@@ -111,7 +111,7 @@ def test_counts_equal_the_search_by_hand(name: str, data: st.DataObject) -> None
 
 @pytest.mark.parametrize("name", ["phenol", "aniline"])
 def test_a_plan_drops_nothing_that_is_wanted(name: str) -> None:
-    """The plan leaves out what cannot become a wanted group in time; the search by hand leaves out nothing."""
+    """The plan leaves out what cannot become a wanted group in time; by hand nothing is left out."""
     ends = ["Br", "NO2", "NH2", "CO2H", "Me", "CO2Me", "CN"]
     some = book().without({joining.name for joining in book().joinings})
     bench = workshop((*BOTTLES[name], *REAGENTS), ROLES, some)

@@ -144,6 +144,15 @@ def fit_template(
     return tuple(dict(pairs) for pairs in _fit(template, named, smiles))
 
 
+def open_places(template: str) -> tuple[str, ...]:
+    """The numbers of a template's open positions, as text, in ascending order.
+
+    >>> open_places("[*:4]C(=O)C([*:3])C(=O)OCC")
+    ('3', '4')
+    """
+    return tuple(str(n) for n in sorted({int(n) for n in re.findall(r"\[\*:(\d+)\]", template)}))
+
+
 def fit_core(core: Core, smiles: str) -> tuple[dict[str, str], ...]:
     """Every way to see a compound as this core with groups on its open positions."""
     return fit_template(core.smiles, smiles, core.labels)

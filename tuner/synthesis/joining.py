@@ -7,9 +7,12 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
+from tuner.errors import LibraryError
+from tuner.library.checks import nearest
 from tuner.library.reactions import Half, Joining
 from tuner.library.records import HYDROGEN_SHORT, Core
 from tuner.structure.cores import prepare_core
+from tuner.structure.templates import open_places
 from tuner.synthesis.alphabet import alphabet, leading_to
 from tuner.synthesis.lattice import Frame, Lattice, as_pattern, relax
 from tuner.synthesis.setting import Pattern, Stage, Workshop
@@ -51,6 +54,43 @@ def core_lattice(
     return relax(stage, frame, start, max_steps, frame.holding(wanted))
 
 
+def check_halves(workshop: Workshop, joining: Joining, core: Core) -> None:
+    """Refuse a joining of a core that names a half or a position which does not exist.
+
+    Raises
+    ------
+    LibraryError
+        File and key of the rule, what is wrong, and what would be right.
+    """
+    open_labels = prepare_core(core).open_labels
+    for number, half in enumerate(joining.cores[core.name], start=1):
+        place = f"{joining.place}.{core.name}, half {number}"
+        if half.core and half.core not in workshop.library.cores:
+            raise LibraryError(
+                f"unknown core '{half.core}'", place=place, remedy=nearest(half.core, workshop.library.cores)
+            )
+        if bool(half.core) == bool(half.template):
+            raise LibraryError(
+                "a half is a core or a template", place=place, remedy="give one of the two keys"
+            )
+        if half.twin and number == 1:
+            raise LibraryError("a twin needs a half before it", place=place, remedy="name the first half")
+        own = (
+            prepare_core(workshop.library.cores[half.core]).open_labels
+            if half.core
+            else open_places(half.template)
+        )
+        for named, known, owner in (
+            (tuple(half.labels), open_labels, f"the core '{core.name}'"),
+            ((*half.labels.values(), *half.fixed, *half.free), own, "the half"),
+        ):
+            strange = [label for label in named if label not in known]
+            if strange:
+                what = f"{owner} has no open position {', '.join(strange)}"
+                remedy = f"its positions are {', '.join(known) or 'none'}"
+                raise LibraryError(what, place=place, remedy=remedy)
+
+
 def plan_halves(
     workshop: Workshop, joining: Joining, core: Core, wanted: Mapping[str, frozenset[str]], max_steps: int
 ) -> tuple[HalfPlan, ...] | None:
@@ -61,6 +101,8 @@ def plan_halves(
     wanted : label on the dye -> groups that may have to stand there when the halves are joined
     """
     halves = joining.cores.get(core.name)
+    if halves is not None:
+        check_halves(workshop, joining, core)
     if halves is None or not workshop.bottles.offers(joining.roles):
         return None
     plans: list[HalfPlan] = []

@@ -94,10 +94,22 @@ class _Sparse:
     def __init__(self) -> None:
         self.keys: Keys = np.zeros(0, dtype=np.int64)
         self.counts: NDArray[np.uint8] = np.zeros(0, dtype=np.uint8)
+        self._waiting: dict[int, list[Keys]] = {}
 
     def note(self, keys: Keys, level: int) -> None:
-        """Hold this count for keys that are not known with it or a lower one."""
-        keys = np.unique(keys)
+        """Hold this count for keys that are not known with it or a lower one.
+
+        They wait until the level is asked for: one merge for a level, since each costs the whole array.
+        """
+        self._waiting.setdefault(level, []).append(keys)
+
+    def _merge(self) -> None:
+        """Take in what waits, lower counts first."""
+        waiting, self._waiting = self._waiting, {}
+        for level in sorted(waiting):
+            self._take_in(np.unique(np.concatenate(waiting[level])), level)
+
+    def _take_in(self, keys: Keys, level: int) -> None:
         at = np.minimum(np.searchsorted(self.keys, keys), max(len(self.keys) - 1, 0))
         known = self.keys[at] == keys if len(self.keys) else np.zeros(len(keys), dtype=bool)
         if known.any():
@@ -118,11 +130,13 @@ class _Sparse:
 
     def at_level(self, level: int) -> Keys:
         """Keys whose count is this level."""
+        self._merge()
         here: Keys = self.keys[self.counts == level]
         return here
 
     def listed(self) -> tuple[Keys, NDArray[np.uint8]]:
         """All keys in order, with their counts."""
+        self._merge()
         return self.keys, self.counts
 
 
@@ -186,10 +200,8 @@ def relax(
     layers = (FREE, PROTECTED) if stage.protection is not None else (FREE,)
     size = len(frame.alphabet.shorts) ** len(frame.labels)
     seen = [_Dense(size) if size <= LARGEST_DENSE else _Sparse() for _ in layers]
-    for pattern, steps in start:
-        row = frame.row_of(pattern)
-        if row is not None and steps <= max_steps:
-            seen[FREE].note(frame.keys(row), steps)
+    for steps, rows in _start_rows(frame, start, max_steps).items():
+        seen[FREE].note(frame.keys(rows), steps)
     for level in range(max_steps):
         frontier = [seen[layer].at_level(level) for layer in layers]
         for layer in layers:
@@ -197,6 +209,18 @@ def relax(
                 _spread(maker, frame, keys, layer, seen, level + 1, _Timely(wanted, max_steps - level - 1))
     listed = [layer.listed() for layer in seen]
     return Lattice(stage, frame, tuple(keys for keys, _ in listed), tuple(counts for _, counts in listed))
+
+
+def _start_rows(
+    frame: Frame, start: Sequence[tuple[Mapping[str, str], int]], max_steps: int
+) -> dict[int, Rows]:
+    """Rows of the starting patterns by their counts, lowest first."""
+    found: dict[int, list[Rows]] = {}
+    for pattern, steps in start:
+        row = frame.row_of(pattern)
+        if row is not None and steps <= max_steps:
+            found.setdefault(steps, []).append(row)
+    return {steps: np.concatenate(found[steps]) for steps in sorted(found)}
 
 
 @dataclass(frozen=True)

@@ -115,7 +115,7 @@ class SplitStepTable:
 
 @dataclass(frozen=True, slots=True)
 class Step:
-    """One reaction of a route. `kind` is the rule's name; `reagents` are stock names; molecules are SMILES."""
+    """One reaction of a route; `kind` is the rule's name, `reagents` are bottles, molecules SMILES."""
 
     kind: str
     title: str
