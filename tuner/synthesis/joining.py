@@ -17,6 +17,9 @@ from tuner.synthesis.alphabet import alphabet, leading_to
 from tuner.synthesis.lattice import Frame, Lattice, as_pattern, relax
 from tuner.synthesis.setting import Pattern, Stage, Workshop
 
+Lattices = dict[tuple[object, ...], Lattice]
+"""Lattices of halves by core, wanted groups and steps."""
+
 
 @dataclass(frozen=True)
 class HalfPlan:
@@ -52,6 +55,16 @@ def core_lattice(
     )
     start = [(dict(pattern), 0) for pattern in workshop.bought(core)]
     return relax(stage, frame, start, max_steps, frame.holding(wanted))
+
+
+def _shared_lattice(
+    workshop: Workshop, core: Core, wanted: Mapping[str, frozenset[str]], max_steps: int, lattices: Lattices
+) -> Lattice:
+    """The lattice of a half, made once where several joinings need the same."""
+    key = (core.name, tuple(sorted((label, tuple(sorted(own))) for label, own in wanted.items())), max_steps)
+    if key not in lattices:
+        lattices[key] = core_lattice(workshop, core, wanted, max_steps)
+    return lattices[key]
 
 
 def check_halves(workshop: Workshop, joining: Joining, core: Core) -> None:
@@ -92,13 +105,19 @@ def check_halves(workshop: Workshop, joining: Joining, core: Core) -> None:
 
 
 def plan_halves(
-    workshop: Workshop, joining: Joining, core: Core, wanted: Mapping[str, frozenset[str]], max_steps: int
+    workshop: Workshop,
+    joining: Joining,
+    core: Core,
+    wanted: Mapping[str, frozenset[str]],
+    max_steps: int,
+    lattices: Lattices,
 ) -> tuple[HalfPlan, ...] | None:
     """The halves of a joining with their step counts; None where a bottle or a role is missing.
 
     Parameters
     ----------
     wanted : label on the dye -> groups that may have to stand there when the halves are joined
+    lattices : what has been planned for other joinings of the core; filled up
     """
     halves = joining.cores.get(core.name)
     if halves is not None:
@@ -110,12 +129,17 @@ def plan_halves(
         if half.twin:
             plans[-1] = _doubled(plans[-1], half)
         else:
-            plans.append(_plan_half(workshop, joining, half, wanted, max_steps))
+            plans.append(_plan_half(workshop, joining, half, wanted, max_steps, lattices))
     return tuple(plans) if all(plan.counts for plan in plans) else None
 
 
 def _plan_half(
-    workshop: Workshop, joining: Joining, half: Half, wanted: Mapping[str, frozenset[str]], max_steps: int
+    workshop: Workshop,
+    joining: Joining,
+    half: Half,
+    wanted: Mapping[str, frozenset[str]],
+    max_steps: int,
+    lattices: Lattices,
 ) -> HalfPlan:
     back = {there: here for here, there in half.labels.items()}
     if half.template:
@@ -128,7 +152,7 @@ def _plan_half(
             there: wanted.get(here, frozenset()) | {HYDROGEN_SHORT} for here, there in half.labels.items()
         }
         needed |= {label: frozenset((short,)) for label, short in half.fixed.items()}
-        lattice = core_lattice(workshop, core, needed, max_steps)
+        lattice = _shared_lattice(workshop, core, needed, max_steps, lattices)
         bottles = workshop.bought(core)
         rows, counts = lattice.reached()
         fits = np.ones(len(rows), dtype=bool)

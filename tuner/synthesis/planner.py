@@ -17,7 +17,7 @@ from tuner.library.records import HYDROGEN_SHORT, Core
 from tuner.structure.cores import prepare_core
 from tuner.synthesis.alphabet import alphabet, leading_to
 from tuner.synthesis.compress import step_part
-from tuner.synthesis.joining import HalfPlan, joined, plan_halves
+from tuner.synthesis.joining import HalfPlan, Lattices, joined, plan_halves
 from tuner.synthesis.lattice import Frame, Lattice, as_pattern, relax
 from tuner.synthesis.records import NO_ROUTE, ListedPart, SplitStepTable, StepPart, Steps, StepTable, StepWay
 from tuner.synthesis.setting import Stage, Workshop
@@ -108,9 +108,10 @@ def _in_one_piece(
     frame = Frame(labels, _nitrogen(core, labels), alphabet(stage, groups))
     wanted = dict.fromkeys(labels, groups)
     ways: list[JoinedWay] = []
+    shared: Lattices = {}
     starts: dict[tuple[tuple[str, str], ...], int] = {}
     for joining in halved:
-        halves = plan_halves(workshop, joining, core, wanted, max_steps - joining.steps)
+        halves = plan_halves(workshop, joining, core, wanted, max_steps - joining.steps, shared)
         if halves is not None:
             ways.append(JoinedWay(joining, halves, ()))
             for pattern, before in joined(halves).items():
@@ -135,9 +136,10 @@ def _in_parts(
     wanted = {label: leading_to(stage, own) for label, own in listed.items()}
     order = list(listed)
     joinings: list[JoinedWay] = []
+    shared: Lattices = {}
     split: tuple[tuple[str, ...], ...] = ()
     for joining in halved:
-        halves = plan_halves(workshop, joining, core, wanted, max_steps - joining.steps)
+        halves = plan_halves(workshop, joining, core, wanted, max_steps - joining.steps, shared)
         if halves is None:
             continue
         finished = tuple(
