@@ -70,7 +70,7 @@ class Groups:
 class Limits:
     """Hard limits; an analog beyond any of them is not listed."""
 
-    max_steps: int = 6
+    max_steps: int = 4
     max_molar_mass_g_mol: float = inf
     min_substituents: int = 0
     max_substituents: int = 99
