@@ -1,8 +1,8 @@
 """What does the pKa of a whole substitution space look like?
 
-The acidity model is linear in its parameters and couples at most two positions at a time. So over all patterns of one
-core both the pKa and its variance are sums of one- and two-position look-ups, and a whole space is evaluated by
-broadcasting, without a loop over analogs.
+The acidity model is linear in its parameters and couples at most two positions at a time. So over all
+patterns of one core both the pKa and its variance are sums of one- and two-position look-ups, and a whole
+space is evaluated by broadcasting, without a loop over analogs.
 """
 
 from __future__ import annotations
@@ -58,7 +58,9 @@ class PairwiseSum:
 
 @dataclass(frozen=True)
 class CoreTables:
-    """pKa (in the brief's medium) and its variance over one core's space; choices as in the matching core space."""
+    """pKa (in the brief's medium) and its variance over one core's space; choices as in the matching core
+    space.
+    """
 
     pka: PairwiseSum
     variance: PairwiseSum

@@ -24,8 +24,9 @@ from tuner.fitting.acidity_data import MIRROR, REMEMBERED, RING_SLOTS, Row
 from tuner.fitting.priors import SERIES_PRIORS, Spreads, decode, encode, group_scales, log_prior, prior_of
 from tuner.library.records import Substituent
 
-DEGREES_OF_FREEDOM = 4.0
-"""Of the t distribution; a residual of ten standard errors keeps a twentieth of its weight."""
+DEGREES_OF_FREEDOM = 3.0
+"""Of the t distribution; a residual of ten standard errors counts a twenty-fifth. Chosen among 3 and 4 by
+leaving out one compound at a time; the two differ by less than 0.005 in mean error."""
 
 REWEIGHTINGS = 8
 SHARED_COLUMNS = ("meta", "para")
@@ -195,7 +196,7 @@ def posterior(
 
 
 def robust_weights(design: Design, spreads: Spreads) -> FloatArray:
-    """Weights of the rows under Student's t, by iterated reweighting; 1.25 for a perfect row, near 0 for a
+    """Weights of the rows under Student's t, by iterated reweighting; 4/3 for a perfect row, near 0 for a
     misprint."""
     weights = np.ones(len(design.y))
     variance = noise(design, spreads)
