@@ -85,3 +85,16 @@ def test_a_dye_with_two_reporting_arms_agrees_too(arms: tuple[str, str]) -> None
     space = MODEL.evaluate(DOOR.index.prepared[core.name], pattern).pka25
     # the second step also holds a share of the other path, 10**-6 here
     assert told.pka == pytest.approx(space, abs=1e-4)
+
+
+@pytest.mark.parametrize("name", ["phenolsulfonephthalein", "phenolphthalein"])
+@pytest.mark.parametrize("group", ["Br", "iPr", "NO2"])
+def test_two_groups_count_the_same_on_either_arm(name: str, group: str) -> None:
+    prepared = DOOR.index.prepared[name]
+    choices = [LIBRARY.substituents["H"], LIBRARY.substituents[group]]
+    tables = MODEL.tables(prepared, [choices] * len(prepared.open_labels))
+    arms = [{"3'", "5'"}, {"3''", "5''"}]
+    index = np.array([[int(label in arm) for label in prepared.open_labels] for arm in arms])
+    pka, variance = tables.pka25.at(index), tables.variance.at(index)
+    assert pka[0] == pytest.approx(pka[1], abs=SUMS)
+    assert variance[0] == pytest.approx(variance[1], abs=SUMS)

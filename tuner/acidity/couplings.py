@@ -90,7 +90,7 @@ def couple(
     Parameters
     ----------
     first, second : Slot
-        Only positions on the reporting ring and on the reporting nitrogen couple.
+        Only positions on one reporting ring (a dye may have two) and on the reporting nitrogen couple.
     ones, twos : sequences of Nature
         The choices at each.
     amine : int
@@ -101,7 +101,7 @@ def couple(
     dict
         Parameter -> array of shape (len(ones), len(twos)).
     """
-    if first.relation not in _ORDER or second.relation not in _ORDER or first.ring != 0 or second.ring != 0:
+    if first.relation not in _ORDER or second.relation not in _ORDER or first.ring != second.ring:
         return {}
     swapped = _ORDER[first.relation] > _ORDER[second.relation]
     if swapped:
@@ -125,9 +125,10 @@ def acceptor_product(first: Slot, ones: Sequence[Nature], second: Slot, twos: Se
     The model is less sure where two strong acceptors act together; the misfit variance goes with this
     product squared.
     """
+    if first.ring != second.ring:
+        return np.zeros((len(ones), len(twos)))
     pulls = []
     for slot, natures in ((first, ones), (second, twos)):
         name = {"ortho": "pull_ortho", "meta": "pull_meta", "para": "pull_para"}.get(slot.relation)
-        on_ring = name is not None and slot.ring == 0
-        pulls.append(np.array([getattr(n, str(name)) if on_ring else 0.0 for n in natures]))
+        pulls.append(np.array([getattr(n, name) if name is not None else 0.0 for n in natures]))
     return np.asarray(np.outer(pulls[0], pulls[1]))

@@ -145,7 +145,7 @@ def fixed_misfit(constants: AcidityConstants, amine: int) -> float:
 def _pair_misfit(constants: AcidityConstants, first: Slot, second: Slot) -> float:
     """Variance that two groups on the reporting ring add by not being quite additive, pKa units squared."""
     ring = ("ortho", "meta", "para")
-    if first.ring != 0 or second.ring != 0 or first.relation not in ring or second.relation not in ring:
+    if first.ring != second.ring or first.relation not in ring or second.relation not in ring:
         return 0.0
     n_ortho = (first.relation == "ortho") + (second.relation == "ortho")
     return constants.misfit.pair**2 + n_ortho * constants.misfit.ortho**2
