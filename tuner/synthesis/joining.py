@@ -18,7 +18,7 @@ from tuner.synthesis.lattice import Frame, Lattice, as_pattern, relax
 from tuner.synthesis.setting import Pattern, Stage, Workshop
 
 Lattices = dict[tuple[object, ...], Lattice]
-"""Lattices of halves by core, wanted groups and steps."""
+"""Lattices of halves by core, wanted groups, steps and what is bought; one set of rules and roles."""
 
 
 @dataclass(frozen=True)
@@ -61,7 +61,8 @@ def _shared_lattice(
     workshop: Workshop, core: Core, wanted: Mapping[str, frozenset[str]], max_steps: int, lattices: Lattices
 ) -> Lattice:
     """The lattice of a half, made once where several joinings need the same."""
-    key = (core.name, tuple(sorted((label, tuple(sorted(own))) for label, own in wanted.items())), max_steps)
+    asked = tuple(sorted((label, tuple(sorted(own))) for label, own in wanted.items()))
+    key = (core.name, asked, max_steps, frozenset(workshop.bought(core)))
     if key not in lattices:
         lattices[key] = core_lattice(workshop, core, wanted, max_steps)
     return lattices[key]

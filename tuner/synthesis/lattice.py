@@ -168,6 +168,8 @@ LARGEST_DENSE = 100_000_000
 """Patterns of a lattice up to which every one gets a byte; more are held as sorted keys of those that are
 reached.
 """
+FEW_STARTS = 8
+"""From so few starts little is reached, and looking through all bytes would take longer."""
 AT_ONCE = 200_000
 """Patterns that the rules look at together; bounds the memory."""
 
@@ -199,7 +201,8 @@ def relax(
     maker = MoveMaker(stage, frame.labels, frame.nitrogen, frame.alphabet)
     layers = (FREE, PROTECTED) if stage.protection is not None else (FREE,)
     size = len(frame.alphabet.shorts) ** len(frame.labels)
-    seen = [_Dense(size) if size <= LARGEST_DENSE else _Sparse() for _ in layers]
+    dense = size <= LARGEST_DENSE and len(start) > FEW_STARTS
+    seen = [_Dense(size) if dense else _Sparse() for _ in layers]
     for steps, rows in _start_rows(frame, start, max_steps).items():
         seen[FREE].note(frame.keys(rows), steps)
     for level in range(max_steps):

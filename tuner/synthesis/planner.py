@@ -68,7 +68,9 @@ class CorePlan:
         return (*ways, *((0, way.finished) for way in self.bought))
 
 
-def plan_core(workshop: Workshop, core: Core, choices: Choices, max_steps: int) -> CorePlan:
+def plan_core(
+    workshop: Workshop, core: Core, choices: Choices, max_steps: int, shared: Lattices | None = None
+) -> CorePlan:
     """Step counts of every analog of one core space.
 
     Parameters
@@ -76,18 +78,21 @@ def plan_core(workshop: Workshop, core: Core, choices: Choices, max_steps: int) 
     choices : for each open position of the prepared core, in its order, the short names that may stand there
     max_steps : int
         Analogs that take more count as without a route.
+    shared : optional
+        Halves planned before with the same rules and roles; filled up.
 
     Returns
     -------
     CorePlan
         For `steps_over`, `makeable` and `routes.routes_to`.
     """
+    shared = {} if shared is None else shared
     labels = prepare_core(core).open_labels
     listed = dict(zip(labels, choices, strict=True))
     halved = [j for j in workshop.book.joinings if core.name in j.cores]
     if halved and len(labels) > MOST_IN_ONE_PIECE:
-        return _in_parts(workshop, core, listed, halved, max_steps)
-    return _in_one_piece(workshop, core, listed, halved, max_steps)
+        return _in_parts(workshop, core, listed, halved, max_steps, shared)
+    return _in_one_piece(workshop, core, listed, halved, max_steps, shared)
 
 
 def _nitrogen(core: Core, labels: Iterable[str]) -> tuple[bool, ...]:
@@ -101,6 +106,7 @@ def _in_one_piece(
     listed: Mapping[str, Sequence[str]],
     halved: Sequence[Joining],
     max_steps: int,
+    shared: Lattices,
 ) -> CorePlan:
     labels = tuple(listed)
     stage = Stage(workshop, core)
@@ -108,7 +114,6 @@ def _in_one_piece(
     frame = Frame(labels, _nitrogen(core, labels), alphabet(stage, groups))
     wanted = dict.fromkeys(labels, groups)
     ways: list[JoinedWay] = []
-    shared: Lattices = {}
     starts: dict[tuple[tuple[str, str], ...], int] = {}
     for joining in halved:
         halves = plan_halves(workshop, joining, core, wanted, max_steps - joining.steps, shared)
@@ -130,13 +135,13 @@ def _in_parts(
     listed: Mapping[str, Sequence[str]],
     halved: Sequence[Joining],
     max_steps: int,
+    shared: Lattices,
 ) -> CorePlan:
     twin = any(half.twin for joining in halved for half in joining.cores[core.name])
     stage = Stage(workshop, core, finishing=True, twin=twin)
     wanted = {label: leading_to(stage, own) for label, own in listed.items()}
     order = list(listed)
     joinings: list[JoinedWay] = []
-    shared: Lattices = {}
     split: tuple[tuple[str, ...], ...] = ()
     for joining in halved:
         halves = plan_halves(workshop, joining, core, wanted, max_steps - joining.steps, shared)

@@ -5,7 +5,7 @@ and what the shelf offers?
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 from tuner.errors import TunerError
@@ -46,6 +46,16 @@ class Workshop:
     library: Library
     book: ReactionBook
     shelf: tuple[StockItem, ...]
+    only: str = ""  # where this bottle is a pattern of a core or template, no other bottle is looked at
+
+    def with_bottle(self, item: StockItem, alone: bool = False, book: ReactionBook | None = None) -> Workshop:
+        """A shelf with one more bottle; `alone`: the only one of its kind, so that what it adds is seen."""
+        more = replace(
+            self, shelf=(*self.shelf, item), only=item.name if alone else "", book=book or self.book
+        )
+        for kept in ("short_of", "_spelled"):  # do not depend on the shelf, and take a while
+            more.__dict__[kept] = getattr(self, kept)
+        return more
 
     @cached_property
     def bottles(self) -> Bottles:
@@ -114,12 +124,16 @@ class Workshop:
         self, item_patterns: Iterable[tuple[str, Sequence[Mapping[str, str]]]]
     ) -> dict[tuple[tuple[str, str], ...], str]:
         found: dict[tuple[tuple[str, str], ...], str] = {}
+        lone: dict[tuple[tuple[str, str], ...], str] = {}
         for name, patterns in item_patterns:
             for groups in patterns:
                 pattern = self.named(groups)
                 if pattern is not None:
-                    found.setdefault(tuple(sorted(pattern.items())), name)
-        return found
+                    key = tuple(sorted(pattern.items()))
+                    found.setdefault(key, name)
+                    if name == self.only:
+                        lone[key] = name
+        return lone or found
 
 
 @dataclass(frozen=True)
