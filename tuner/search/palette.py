@@ -8,7 +8,7 @@ from tuner.brief.records import Brief
 from tuner.library import Library
 from tuner.library.records import HYDROGEN_SHORT, Substituent
 from tuner.screening.groups import flags_of_group
-from tuner.structure.molecule import has_match
+from tuner.structure.molecule import has_match, read_smarts
 from tuner.structure.records import PreparedCore
 
 EXCLUDE = "exclude"
@@ -70,6 +70,10 @@ def palette(brief: Brief, library: Library) -> tuple[Substituent, ...]:
     anchor excluded, and groups that bring along a flag which the brief excludes.
     """
     groups = brief.groups
+    for key in ("allow", "forbid", "require"):
+        for word in getattr(groups, key):
+            if word.startswith(SMARTS_WORD):
+                read_smarts(word.removeprefix(SMARTS_WORD).strip(), place=f"key groups.{key}")
     barred = {flag for flag, action in brief.limits.flags if action == EXCLUDE}
     allowed = [
         group

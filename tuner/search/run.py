@@ -18,7 +18,15 @@ from tuner.search.pool import Pooled, Searcher, gather
 from tuner.search.result import Candidate, DesignResult, InputFile, Progress, SpaceSummary
 from tuner.search.rooms import Rooms
 from tuner.search.stages import Stages
-from tuner.search.strategy import Method, choose_method, nothing_left, require_reach, resolution, run_search
+from tuner.search.strategy import (
+    Method,
+    choose_method,
+    nothing_left,
+    require_bottles,
+    require_reach,
+    resolution,
+    run_search,
+)
 from tuner.search.survey import summaries
 from tuner.search.tables import PKA_UNIT, Goal, SpaceTables
 from tuner.search.user_objective import UserObjective, load_objective
@@ -62,6 +70,7 @@ def design(
     with stages.timed("tables"):
         spaces = _search_tables(rooms, stages)
         goal = rooms.goal()
+        require_bottles(brief, spaces)
         require_reach(spaces, goal)
     method = choose_method(brief, spaces)
     judge = Judge(rooms, goal, user)

@@ -12,12 +12,14 @@ from tuner.brief.records import Brief
 from tuner.errors import BriefError, SearchError
 from tuner.search.bounds import SpaceBounds
 from tuner.search.certified import search_certified
+from tuner.search.counting import count_by_steps
 from tuner.search.evaluate import removed_by
 from tuner.search.exact import Search, search_exact
 from tuner.search.found import Found
 from tuner.search.result import Progress
 from tuner.search.sample import sample_rows
 from tuner.search.tables import PKA_UNIT, Goal, SpaceTables, in_ph
+from tuner.synthesis.records import NO_ROUTE
 
 GONE_THROUGH_UP_TO = 300_000_000
 """Patterns up to which every analog is gone through by default: a few seconds."""
@@ -102,6 +104,28 @@ def require_reach(spaces: Sequence[SpaceTables], goal: Goal) -> None:
             place="key target.ph",
             remedy="choose another core or allow more groups",
         )
+
+
+def require_bottles(brief: Brief, spaces: Sequence[SpaceTables]) -> None:
+    """An error where the shelf leads to no analog at all, not even to a bare core.
+
+    Groups that no route brings are not offered, so that only spaces of one pattern need a look.
+
+    Raises
+    ------
+    BriefError
+        Names the shelf.
+    """
+    if any(tables.size > 1 for tables in spaces):
+        return
+    if any(steps != NO_ROUTE for tables in spaces for steps in count_by_steps(tables.steps)):
+        return
+    raise BriefError(
+        f'nothing can be made from the shelf "{brief.reagents.shelf}" within {brief.limits.max_steps} steps '
+        f"on {', '.join(brief.cores)}",
+        place="key reagents.shelf",
+        remedy="add a starting material and the reagents of a joining step, or take another shelf",
+    )
 
 
 def pka_range(tables: SpaceTables, goal: Goal) -> tuple[float, float]:

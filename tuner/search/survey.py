@@ -8,6 +8,7 @@ from tuner.search.build import count_analogs
 from tuner.search.result import SpaceSummary
 from tuner.search.rooms import Rooms
 from tuner.search.space import CoreSpace, DesignSpace
+from tuner.search.strategy import require_bottles
 from tuner.structure.own_library import load_checked_library
 
 
@@ -20,7 +21,10 @@ def survey(brief: Brief, library: Library | None = None) -> tuple[SpaceSummary, 
         Whatever would stop the search as well: reagents that are not known, nothing to choose from.
     """
     rooms = Rooms(brief, library or load_checked_library(brief.overlay))
-    return summaries(rooms.space)
+    found = summaries(rooms.space)
+    if all(core.patterns == 1 for core in found):
+        require_bottles(brief, [rooms.search_tables(n) for n in range(len(rooms.space.spaces))])
+    return found
 
 
 def summaries(space: DesignSpace) -> tuple[SpaceSummary, ...]:
