@@ -25,13 +25,13 @@ from tuner.search.result import Progress as Report
 WIDEST = 100
 """Columns that a table may take on a screen."""
 
-PIPED = 160
-"""Columns where the output is no screen: rows then stay on one line."""
+LONG_LINES = 160
+"""Columns of long lists where the output is no screen: rows then stay on one line, for searching."""
 
 
-def out() -> Console:
-    """The console for results."""
-    return _console(sys.stdout.isatty(), stderr=False)
+def out(piped: int = WIDEST) -> Console:
+    """The console for results; `piped` columns where the output is no screen."""
+    return _console(sys.stdout.isatty(), stderr=False, piped=piped)
 
 
 def err() -> Console:
@@ -39,10 +39,10 @@ def err() -> Console:
     return _console(sys.stderr.isatty(), stderr=True)
 
 
-def _console(is_screen: bool, *, stderr: bool) -> Console:
+def _console(is_screen: bool, *, stderr: bool, piped: int = WIDEST) -> Console:
     """A console of bounded width, without automatic colouring of numbers."""
     console = Console(stderr=stderr, highlight=False, emoji=False)
-    width = min(console.width, WIDEST) if is_screen else PIPED
+    width = min(console.width, WIDEST) if is_screen else piped
     return Console(stderr=stderr, highlight=False, emoji=False, width=width)
 
 
@@ -66,19 +66,22 @@ def table(
         title_style="bold",
         caption_style="dim",
         pad_edge=False,
+        padding=(0, 1, 0, 0),  # with the blank divider two columns of gap; three cost a word per row
     )
     for heading, side in headings:
+        right = side == "right"
+        # Folding loses nothing on a narrow screen, where an ellipsis would hide the end of a name.
         drawn.add_column(
-            escape(heading), justify="right" if side == "right" else "left", no_wrap=side == "right"
+            escape(heading), justify="right" if right else "left", no_wrap=right, overflow="fold"
         )
     for row in rows:
         drawn.add_row(*(escape(text) for text in row))
     return drawn
 
 
-def show(drawn: Table) -> None:
+def show(drawn: Table, *, piped: int = WIDEST) -> None:
     """A table on standard output; where that is no screen, without blanks at the ends of lines."""
-    console = out()
+    console = out(piped)
     if sys.stdout.isatty():
         console.print(drawn)
         return

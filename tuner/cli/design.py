@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping, Sequence
 from dataclasses import replace
 from math import isfinite
 from pathlib import Path
+from string import ascii_lowercase
 from textwrap import fill
 from time import perf_counter
 
@@ -81,9 +83,10 @@ def _page(files: tuple[Path, ...]) -> Path:
 
 def candidate_table(result: DesignResult) -> Table:
     """The first candidates, with units in the headings."""
-    several = len({c.core for c in result.candidates}) > 1
+    shown = result.candidates[:ROWS_SHOWN]
+    letters = _core_letters(shown)
     headings = [("rank", "right"), ("substitution", "left")]
-    headings += [("core", "left")] if several else []
+    headings += [("core", "left")] if letters else []
     headings += [
         ("pKa' ± sd", "right"),
         ("offset, pH", "right"),
@@ -93,27 +96,37 @@ def candidate_table(result: DesignResult) -> Table:
         ("front", "left"),
         ("cautions", "right"),
     ]
-    shown = result.candidates[:ROWS_SHOWN]
     more = len(result.candidates) - len(shown)
     caption = "front: nothing is closer, shorter and lighter at once; cautions: number"
     if any(isfinite(c.measured_pka) for c in shown):
-        caption += "; m: has been measured, and is ranked by that value"
+        caption += "; m: measured, in this medium"
     caption = f"{more} more rows in the files; {caption}" if more else caption
-    return table("", headings, [_row(c, several) for c in shown], caption)
+    if letters:
+        caption = f"cores: {', '.join(f'{letter} {core}' for core, letter in letters.items())}\n{caption}"
+    return table("", headings, [_row(c, letters, result.brief.target.ph) for c in shown], caption)
 
 
-def _row(candidate: Candidate, several: bool) -> tuple[str, ...]:
-    """One candidate in words."""
+def _core_letters(shown: Sequence[Candidate]) -> dict[str, str]:
+    """A letter for each core, in order of first rank; none where there is one core only.
+
+    Names of cores are long, and a row of them would not fit a screen.
+    """
+    cores = list(dict.fromkeys(c.core for c in shown))
+    return dict(zip(cores, ascii_lowercase, strict=False)) if len(cores) > 1 else {}
+
+
+def _row(candidate: Candidate, letters: Mapping[str, str], target_ph: float) -> tuple[str, ...]:
+    """One candidate in words; a measured value stands in place of the predicted one, as it ranks."""
     c = candidate
     cut = LONGEST_SUBSTITUTION
     words = c.substitution if len(c.substitution) <= cut else c.substitution[: cut - 1] + "…"
-    measured = " m" if isfinite(c.measured_pka) else ""
+    measured = isfinite(c.measured_pka)
     return (
         str(c.rank),
         words,
-        *((c.core,) if several else ()),
-        digits.pka_text(c.pka, c.pka_sd) + measured,
-        digits.signed(c.offset),
+        *((letters.get(c.core, c.core),) if letters else ()),
+        f"{c.measured_pka:.2f} m" if measured else digits.pka_text(c.pka, c.pka_sd),
+        digits.signed(c.measured_pka - target_ph if measured else c.offset),
         digits.percent(c.hit_probability),
         str(c.steps),
         digits.mass(c.molar_mass_g_mol),

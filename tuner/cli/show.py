@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from pathlib import Path
 
-from tuner.cli.console import facts, say, show, table
+from tuner.cli.console import LONG_LINES, facts, say, show, table
 from tuner.cli.show_reactions import all_reactions, one_reaction
 from tuner.errors import TunerError
 from tuner.library import Library, load_library
@@ -122,7 +122,7 @@ def _series(library: Library) -> None:
     headings = (
         ("series", "left"),
         ("equilibrium", "left"),
-        ("pKa of the parent", "right"),
+        ("parent pKa", "right"),
         ("rho", "right"),
         ("enthalpy, kJ/mol", "left"),
     )
@@ -243,7 +243,9 @@ def _stock(library: Library) -> None:
         ("roles", "left"),
         ("in stock", "left"),
     )
-    show(table(f"{len(rows)} bottles", headings, rows, "an invented shelf of real compounds"))
+    show(
+        table(f"{len(rows)} bottles", headings, rows, "an invented shelf of real compounds"), piped=LONG_LINES
+    )
 
 
 def _one_item(library: Library, name: str) -> None:

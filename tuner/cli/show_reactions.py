@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from tuner.cli.console import facts, show, table
+from tuner.cli.console import LONG_LINES, facts, show, table
 from tuner.errors import TunerError
 from tuner.library import Library, data_folder
 from tuner.library.checks import nearest
@@ -27,7 +27,7 @@ def all_reactions(library: Library) -> None:
         for name, (section, rule) in _rules(library).items()
     ]
     caption = 'to switch one off: [reagents] switched_off = ["NAME"]; in full: tuner show reactions NAME'
-    show(table(f"{len(rows)} reactions", headings, rows, caption))
+    show(table(f"{len(rows)} reactions", headings, rows, caption), piped=LONG_LINES)
 
 
 def one_reaction(library: Library, name: str) -> None:
