@@ -1,7 +1,8 @@
 """Which words does a user read when something is wrong?
 
-Every message says what is wrong, where, and what would be right, in one line. The command line prints it and ends
-with exit code 2; no traceback. Doubts that do not stop the work are collected in a `Notes` object and shown once.
+Every message says what is wrong, where, and what would be right, in one line. The command line prints it
+and ends with exit code 2; no traceback. Doubts that do not stop the work are collected in a `Notes` object
+and shown once.
 """
 
 from __future__ import annotations

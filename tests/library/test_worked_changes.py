@@ -8,6 +8,7 @@ from __future__ import annotations
 import re
 from pathlib import Path
 
+import numpy as np
 import pytest
 
 from tuner.library import load_library
@@ -17,6 +18,8 @@ from tuner.prediction.door import predict_molecule
 from tuner.screening.screen import flag_names, screen
 from tuner.structure.cores import prepare_core
 from tuner.structure.molecule import canonical_smiles
+from tuner.synthesis.planner import plan_core, steps_over
+from tuner.synthesis.setting import Workshop
 
 GUIDE = Path(__file__).resolve().parents[2] / "DEVELOPERS.md"
 
@@ -54,6 +57,21 @@ def test_a_core(own: Path) -> None:
     assert prepare_core(library.cores[name]).open_labels == ("3", "5", "6", "8")
     found = predict_molecule("O=c1cc(C(F)(F)F)c2ccc(O)cc2o1", None, library)
     assert (found.core, found.pka) == (name, 7.26)  # the parent that the example states
+
+
+def test_a_core_and_the_joining_that_makes_it(own: Path) -> None:
+    block = re.search(r"```toml\n(\[joining.*?)```", GUIDE.read_text(encoding="utf-8"), re.DOTALL)
+    assert block is not None
+    (own / "cores.toml").write_text(printed("cores.toml"), encoding="utf-8")
+    (own / "reactions.toml").write_text(block.group(1), encoding="utf-8")
+    library = load_library(own)
+    core = library.cores["7-hydroxy-4-(trifluoromethyl)coumarin"]
+    book = load_reactions(library.substituents, overlay=own)
+    shelf = read_shelf("example", canonical=canonical_smiles)
+    bare = [["H"]] * 4
+    steps = steps_over(plan_core(Workshop(library, book, shelf), core, bare, 4), bare)
+    # resorcinol and ethyl trifluoroacetoacetate stand on the shelf: one closure
+    assert steps.at(np.zeros((1, 4), dtype=np.int64)).tolist() == [1]
 
 
 def test_a_core_with_a_position_of_its_own(own: Path) -> None:

@@ -52,10 +52,10 @@ def _show_molecules(reference: Path) -> None:
         ("set", "left"),
         ("values", "right"),
         ("predicted", "right"),
-        (f"mean |error|, best {BEST_SHARE:.0%}", "right"),
-        ("median |error|", "right"),
+        (f"mean, best {BEST_SHARE:.0%}".replace("%", " %"), "right"),
+        ("median", "right"),
         (f"within {WITHIN:g}", "right"),
-        ("90 % interval holds", "right"),
+        ("90 % interval", "right"),
     )
     rows = [
         (
@@ -69,7 +69,7 @@ def _show_molecules(reference: Path) -> None:
         )
         for s in scores
     ]
-    show(table("Whole molecules, by the shipped model", headings, rows))
+    show(table("Whole molecules, by the shipped model: size of the errors, pKa units", headings, rows))
     for part in (score for score in scores if not score.title.startswith(" ")):
         worst = [
             (m.name, m.label, f"{m.measured:.2f}", f"{m.predicted:.2f} ± {m.sd:.2f}") for m in part.worst
@@ -83,16 +83,16 @@ def _score_table(scores: Iterable[Score]) -> Table:
     headings = (
         ("set", "left"),
         ("compounds", "right"),
-        (f"mean |error|, best {BEST_SHARE:.0%}", "right"),
-        ("median |error|", "right"),
+        (f"mean, best {BEST_SHARE:.0%}".replace("%", " %"), "right"),
+        ("median", "right"),
         (f"within {WITHIN:g}", "right"),
-        ("90 % interval holds", "right"),
+        ("90 % interval", "right"),
     )
     rows = [
         (s.title, str(s.n), f"{s.mean_best:.2f}", f"{s.median:.2f}", f"{s.within:.0%}", f"{s.coverage:.0%}")
         for s in scores
     ]
-    return table("Predicted against measured", headings, rows)
+    return table("Size of the errors, pKa units", headings, rows)
 
 
 def _worst_table(scaffold: str, found: list[LeftOut], made: Fit) -> Table:

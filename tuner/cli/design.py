@@ -22,7 +22,6 @@ from tuner.search.result import Candidate, DesignResult
 
 OUTPUTS = Path("outputs")
 ROWS_SHOWN = 12
-LONGEST_SUBSTITUTION = 34
 
 
 def run(name: str, *, out: Path | None, seed: int | None, again: bool, scheduler: str, quiet: bool) -> None:
@@ -118,12 +117,10 @@ def _core_letters(shown: Sequence[Candidate]) -> dict[str, str]:
 def _row(candidate: Candidate, letters: Mapping[str, str], target_ph: float) -> tuple[str, ...]:
     """One candidate in words; a measured value stands in place of the predicted one, as it ranks."""
     c = candidate
-    cut = LONGEST_SUBSTITUTION
-    words = c.substitution if len(c.substitution) <= cut else c.substitution[: cut - 1] + "…"
     measured = isfinite(c.measured_pka)
     return (
         str(c.rank),
-        words,
+        c.substitution,
         *((letters.get(c.core, c.core),) if letters else ()),
         f"{c.measured_pka:.2f} m" if measured else digits.pka_text(c.pka, c.pka_sd),
         digits.signed(c.measured_pka - target_ph if measured else c.offset),

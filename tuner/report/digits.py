@@ -9,8 +9,6 @@ COARSE_SD = 0.25
 
 MISSING = "–"
 SUPERSCRIPTS = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
-GROUP = "\u202f"
-"""Narrow space that does not break, between groups of three digits."""
 
 
 def pka_decimals(sd: float) -> int:
@@ -66,11 +64,11 @@ def percent(share: float) -> str:
 def count(number: int) -> str:
     """A number of things: in full up to ten million, then as a power of ten.
 
-    >>> count(840_000_000).replace(GROUP, "_"), count(12_345).replace(GROUP, "_")
-    ('8.4 × 10⁸', '12_345')
+    >>> count(840_000_000), count(12_345)
+    ('8.4 × 10⁸', '12,345')
     """
     if abs(number) < 10_000_000:
-        return f"{number:,}".replace(",", GROUP)
+        return f"{number:,}"
     power = floor(log10(abs(number)))
     head = f"{number / 10**power:.1f}"
     if head.lstrip("-") == "10.0":

@@ -124,7 +124,7 @@ def require_bottles(brief: Brief, spaces: Sequence[SpaceTables]) -> None:
         f'nothing can be made from the shelf "{brief.reagents.shelf}" within {brief.limits.max_steps} steps '
         f"on {', '.join(brief.cores)}",
         place="key reagents.shelf",
-        remedy="add a starting material and the reagents of a joining step, or take another shelf",
+        remedy="include the bare core by its SMILES, or add what a joining step to it asks for",
     )
 
 
