@@ -17,7 +17,7 @@ from tuner.cli.console import WIDEST, note, progress, say, show, table
 from tuner.cli.faults import placed_in
 from tuner.report import digits, write_run
 from tuner.report.folder import check_free, free_folder
-from tuner.report.wording import CAUTIONS, medium_in_words, target_in_words
+from tuner.report.wording import CAUTIONS, closeness_in_words, medium_in_words, target_in_words
 from tuner.search.result import Candidate, DesignResult
 
 OUTPUTS = Path("outputs")
@@ -97,6 +97,8 @@ def candidate_table(result: DesignResult) -> Table:
     ]
     more = len(result.candidates) - len(shown)
     caption = "front: nothing is closer, shorter and lighter at once; cautions: number"
+    if worst := closeness_in_words(result.brief):
+        caption += f"; {worst}"
     if any(isfinite(c.measured_pka) for c in shown):
         caption += "; m: measured, in this medium"
     caption = f"{more} more rows in the files; {caption}" if more else caption

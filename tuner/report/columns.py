@@ -120,7 +120,7 @@ COLUMNS: tuple[Column, ...] = (
     Column(
         "front",
         "front",
-        "yes: no analog is closer to the target, shorter and lighter at once",
+        "yes: no analog is closer to the targets (at the worst of them), shorter and lighter at once",
         lambda c: YES if c.front else NO,
         width=7,
     ),

@@ -10,6 +10,7 @@ from __future__ import annotations
 from tuner.report.columns import shown_pka
 from tuner.report.digits import mass, signed
 from tuner.report.svg import Scale, element, hover, picture, text, ticks
+from tuner.report.wording import closeness_in_words
 from tuner.search.result import DesignResult, TradePoint
 
 WIDTH, LEFT, RIGHT, TOP, BOTTOM = 960.0, 92.0, 96.0, 34.0, 58.0
@@ -158,4 +159,6 @@ def trade_caption(result: DesignResult) -> str:
         "Rings: other listed analogs. Dots: a sample of the rest. Numbers are ranks. "
         "Within each band heavier analogs stand higher and are drawn larger."
     )
+    if worst := closeness_in_words(result.brief):
+        words += f" On the front {worst}; the picture shows the first."
     return words + (f" {hidden} marks lie outside the picture." if hidden else "")

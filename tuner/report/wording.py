@@ -46,6 +46,12 @@ def medium_in_words(medium: Medium) -> str:
     return ", ".join(parts)
 
 
+def closeness_in_words(brief: Brief) -> str:
+    """How closeness counts where the dye must switch at several targets; else ""."""
+    several = any(target.role == "switches" for target in brief.also)
+    return "closeness counts at the worst of the targets at which it must switch" if several else ""
+
+
 def target_in_words(target: Target) -> str:
     """What the dye must do, without the medium.
 
