@@ -5,6 +5,8 @@
 - Cores whose other groups are ionised at the transition and counted in the measured parent.
 - o,o'-Dihydroxyazo dyes: the two hydroxyls share a hydrogen bond with the azo group, which makes the first
   proton leave early and the second late.
+- An ammonium or azonium proton that a neighbouring acid anion holds (dialkylanthranilic acids, methyl red,
+  1-naphthylamine-8-sulfonic acid) leaves late.
 - Hydroxyazo dyes also take up a proton at the azo group in strong acid.
 """
 
@@ -52,6 +54,17 @@ DIHYDROXYAZO_SD = 0.6
 """o,o'-Dihydroxyazo dyes: both hydroxyls' pKa's fall by this much while the other holds its proton, and rise
 by as much above
 their own once it is gone. Sized on calcon-type dyes (Serjeant1979), rounded."""
+
+PROTON_BRIDGES: tuple[tuple[str, float, float], ...] = (
+    ("[NX3]([CX4;!$(CC[OX2,N])])([CX4;!$(CC[OX2,N])])c1ccccc1C(=O)[OX2H1]", 1.4, 0.5),
+    ("[NX3]c1ccc(N=Nc2ccccc2C(=O)[OX2H1])cc1", 0.9, 0.4),
+    ("[NX3]c1cccc2cccc(S(=O)(=O)[OX2H1])c12", 1.7, 0.4),
+)
+"""Amine (first atom) whose proton the anion of an acid in the same match holds by a hydrogen bond: by how
+much the amine's pKa then lies above what the charge alone makes of it, and the standard error. Sized on
+N,N-dimethylanthranilic acid (Perrin1965), methyl red (memory:Bishop1972) and 1-naphthylamine-8-sulfonic
+acid (memory:compilations), rounded; one compound each. Hydroxyalkyl groups on nitrogen are left out:
+bis(hydroxyethyl)aminoterephthalic acids (Perrin1965) show no such rise."""
 
 NOT_MODELLED: tuple[tuple[str, str], ...] = (
     (

@@ -22,6 +22,7 @@ from tuner.prediction.held import (
     DIHYDROXYAZO_SHIFT,
     HELD_OTHER,
     HELD_PAIRS,
+    PROTON_BRIDGES,
 )
 from tuner.prediction.ionisation import IonSite
 from tuner.prediction.records import SitePrediction, Term
@@ -113,6 +114,7 @@ class SiteMaker:
                 self._add_side_site(made, view, medium)
         self._held_together(made, kept)
         self._bridged_by_azo(made, kept, found.smiles)
+        self._bridged_by_proton(made, kept, found.smiles)
         self._two_protons_on_one_centre(made, kept, found.smiles)
         return made
 
@@ -238,6 +240,20 @@ class SiteMaker:
                 sd = hypot(made.ions[k].sd, DIHYDROXYAZO_SD)
                 self._replace(made, k, made.ions[k].pka - DIHYDROXYAZO_SHIFT, sd, -DIHYDROXYAZO_SHIFT)
             made.energies[i, j] = made.energies[j, i] = 2 * DIHYDROXYAZO_SHIFT
+
+    def _bridged_by_proton(self, made: SiteTable, kept: list[SiteView], smiles: str) -> None:
+        """An amine's proton held by the anion of an acid beside it."""
+        number = {view.reporting_atom: k for k, view in enumerate(kept)}
+        for pattern, rise, rise_sd in PROTON_BRIDGES:
+            for match in sorted(matches(smiles, pattern)):
+                i = number.get(match[0], -1)
+                acids = [number[a] for a in match[1:] if a in number and made.ions[number[a]].own is None]
+                if i not in made.evaluate or not acids or (i, acids[0]) in made.energies:
+                    continue
+                j, of = acids[0], made.evaluate[i]
+                rise_in_all = of(frozenset({j})).pka - of(frozenset()).pka + rise
+                made.energies[i, j], made.energies[j, i] = rise_in_all, -rise_in_all
+                self._replace(made, i, made.ions[i].pka, hypot(made.ions[i].sd, rise_sd), 0.0)
 
     def _two_protons_on_one_centre(self, made: SiteTable, kept: list[SiteView], smiles: str) -> None:
         """Phosphonic and arsonic acids: the rise to the second proton stands in the table."""
