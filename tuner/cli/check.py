@@ -14,7 +14,7 @@ from tuner.search.result import SpaceSummary
 def run(name: str) -> None:
     """Read, build the space, count, print."""
     from tuner.cli.faults import placed_in
-    from tuner.search.survey import survey
+    from tuner.search.extent import survey
 
     brief = read_brief(find_brief(name))
     with placed_in(brief):

@@ -23,6 +23,6 @@ def design(
 
 def survey(brief: Brief, library: Library | None = None) -> tuple[SpaceSummary, ...]:
     """The design space of a brief, counted but not searched; see `tuner.search.run.survey`."""
-    from tuner.search.survey import survey as run
+    from tuner.search.extent import survey as run
 
     return run(brief, library)

@@ -11,6 +11,7 @@ from tempfile import gettempdir
 from tuner.brief.records import Brief
 from tuner.library import Library
 from tuner.search.exact import Search
+from tuner.search.extent import summaries
 from tuner.search.finalists import Judge, removed_lines
 from tuner.search.found import Found
 from tuner.search.outcome import Standings, candidates_of, cloud_of, front_of, rank, require_hope
@@ -27,12 +28,18 @@ from tuner.search.strategy import (
     resolution,
     run_search,
 )
-from tuner.search.survey import summaries
 from tuner.search.tables import PKA_UNIT, Goal, SpaceTables
 from tuner.search.user_objective import UserObjective, load_objective
 from tuner.structure.own_library import load_checked_library
 
 TABLES = "filling look-up tables"
+
+
+WITHOUT_OBJECTIVE = (
+    "That holds without your own objective; with it, the order is the best that evolution found, "
+    "with no bound."
+)
+BY_EVOLUTION = "That is the seed of the evolution; what evolution added carries no bound of its own."
 
 
 def design(
@@ -159,7 +166,7 @@ class _Run:
             cloud=cloud,
             method="evolutionary" if self.pooled.evolved else self.method.name,
             method_reason=self._reason(),
-            certificate=self.pooled.found.certificate.text,
+            certificate=self._certificate(),
             counts=self._counts(),
             notes=self._notes(user),
             campaign=campaign,
@@ -168,6 +175,13 @@ class _Run:
             seed=brief.search.seed,
             timings_s=tuple(stages.seconds),
         )
+
+    def _certificate(self) -> str:
+        """What is certain; evolution and a user's own objective add what no bound covers."""
+        text = self.pooled.found.certificate.text
+        if self.judge.user:
+            return f"{text} {WITHOUT_OBJECTIVE}"
+        return f"{text} {BY_EVOLUTION}" if self.pooled.evolved else text
 
     def _reason(self) -> str:
         """Which method was used and why."""
