@@ -48,6 +48,7 @@ class RuleTable:
     layers: tuple[int, ...]
     takes: tuple[int, ...]  # numbers of groups in the alphabet
     gives: tuple[int, ...]
+    is_taken: Mask
     spoils: Mask
 
 
@@ -67,7 +68,6 @@ class MoveMaker:
             ring for ring in ring_places(stage.core) if any(label in self.labels for label in ring.labels)
         ]
         self._attacks: dict[tuple[str, int, int], dict[str, Mask]] = {}
-        self._taken_by: dict[str, Mask] = {}
 
     @cached_property
     def tables(self) -> tuple[RuleTable, ...]:
@@ -78,23 +78,16 @@ class MoveMaker:
             takes = tuple(index[t] for t in rule.takes if t in index)
             given = tuple(index[g] for g in gives if g in index)
             if given and (takes or rule.kind != "exchange"):
-                found.append(RuleTable(rule, layers, takes, given, self.alphabet.holds(rule.spoils)))
+                holds = self.alphabet.holds
+                found.append(RuleTable(rule, layers, takes, given, holds(rule.takes), holds(rule.spoils)))
         return tuple(found)
-
-    @cached_property
-    def by_name(self) -> dict[str, RuleTable]:
-        """The same by the names of the rules."""
-        return {table.rule.name: table for table in self.tables}
-
-    def nitro(self, rows: Rows) -> NDArray[np.int64]:
-        """Number of nitro groups on the rings, those of the core included."""
-        return np.asarray((rows == self.alphabet.index.get(NITRO, -1)).sum(axis=1) + self._nitro_carried)
 
     def harmless(self, rows: Rows) -> Mask:
         """False for patterns that must not be made, not even on the way: three or more nitro groups on the
         rings.
         """
-        return np.asarray(self.nitro(rows) < MOST_NITRO)
+        nitro = self.alphabet.index.get(NITRO, -1)
+        return np.asarray((rows == nitro).sum(axis=1) + self._nitro_carried < MOST_NITRO)
 
     @cached_property
     def _nitro_carried(self) -> int:
@@ -111,20 +104,18 @@ class MoveMaker:
 
     def moves(self, rows: Rows, layer: int) -> Iterator[Move]:
         """Every single step that the rules of a layer allow on these rows."""
+        everything = np.arange(len(rows))
         for table in self.tables:
-            if layer in table.layers:
-                for at, change in self.by_rule(table, rows, layer):
-                    yield table.rule, at, change
-
-    def by_rule(
-        self, table: RuleTable, rows: Rows, layer: int
-    ) -> Iterator[tuple[NDArray[np.int64], NDArray[np.int64] | int]]:
-        """Every single step that one rule allows on these rows."""
-        kept = np.flatnonzero(~table.spoils[rows].any(axis=1))
-        if len(kept):
-            for at, change in self._by_kind(table, rows[kept], layer):
+            if layer not in table.layers:
+                continue
+            spoiled = table.spoils[rows].any(axis=1)
+            kept = everything[~spoiled]
+            if not len(kept):
+                continue
+            good = rows[kept]
+            for at, change in self._by_kind(table, good, layer):
                 if len(at):
-                    yield kept[at], change
+                    yield table.rule, kept[at], change
 
     def _by_kind(
         self, table: RuleTable, rows: Rows, layer: int
@@ -147,32 +138,17 @@ class MoveMaker:
         for made in table.gives:
             yield at, (made - rows[at, axis].astype(np.int64)) * self.weights[axis]
 
-    def takes_part(self, rule: Reaction, rows: Rows) -> Mask:
-        """Where the groups stand on which an exchange acts, or that compete for it."""
-        if rule.name not in self._taken_by:
-            self._taken_by[rule.name] = self.alphabet.holds(rule.takes)
-        taken = self._taken_by[rule.name][rows]
+    def _taken(self, table: RuleTable, rows: Rows) -> Mask:
+        """Where the groups stand on which a rule acts."""
+        taken = table.is_taken[rows]
         taken[:, [a for a in range(rows.shape[1]) if self.nitrogen[a]]] = False
-        if rule.needs_acceptor and not rule.all_at_once:
-            for axis in self.on_ring:
-                taken[:, axis] &= self._activated(rows, axis)
         return taken
 
     def _exchange_all(
         self, table: RuleTable, rows: Rows
     ) -> Iterator[tuple[NDArray[np.int64], NDArray[np.int64] | int]]:
         """Every position that bears the group changes; no other group that the rule takes may be there."""
-        for group, at, span in self.places_of_all(table, rows):
-            for made in table.gives:
-                yield at, (made - group) * span
-
-    def places_of_all(
-        self, table: RuleTable, rows: Rows
-    ) -> Iterator[tuple[int, NDArray[np.int64], NDArray[np.int64]]]:
-        """For each group that a rule takes the rows that bear it and nothing else that the rule takes, and
-        its places as one number.
-        """
-        taken = self.takes_part(table.rule, rows)
+        taken = self._taken(table, rows)
         some = np.flatnonzero(taken.any(axis=1))
         taken = taken[some]
         for group in table.takes:
@@ -181,7 +157,9 @@ class MoveMaker:
             if table.rule.needs_acceptor:
                 for axis in self.on_ring:
                     pure &= ~here[:, axis] | self._activated(rows[some], axis)
-            yield group, some[pure], here[pure].astype(np.int64) @ np.asarray(self.weights, dtype=np.int64)
+            span = here[pure].astype(np.int64) @ np.asarray(self.weights, dtype=np.int64)
+            for made in table.gives:
+                yield some[pure], (made - group) * span
 
     def _exchange_one(
         self, table: RuleTable, rows: Rows
@@ -189,17 +167,20 @@ class MoveMaker:
         """One position changes; a second one that could change as well would compete, unless the rule tells
         two apart.
         """
-        taken = self.takes_part(table.rule, rows)
+        taken = self._taken(table, rows)
+        if table.rule.needs_acceptor:
+            for axis in self.on_ring:
+                taken[:, axis] &= self._activated(rows, axis)
         fits = taken.sum(axis=1) == (2 if table.rule.one_of_two else 1)
         if table.rule.one_of_two:
-            beside: Mask = np.asarray(taken & self.beside_reporting)
+            beside: Mask = np.asarray(taken & self._beside_reporting)
             some = np.asarray(beside.any(axis=1))
             taken = np.where(some[:, None], beside, taken)
         for axis in self.on_ring:
             yield from self._put(table, axis, np.flatnonzero(fits & taken[:, axis]), rows)
 
     @cached_property
-    def beside_reporting(self) -> Mask:
+    def _beside_reporting(self) -> Mask:
         """For each position whether it is ortho to the reporting group."""
         return np.array(
             [
