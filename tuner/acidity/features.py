@@ -50,19 +50,28 @@ NITROGEN_FEATURES = (
     "nitrogen_medium",
     "nitrogen_large",
     "nitrogen_aryl",
+    "nitrogen_branched",
 )
 AMINE_FEATURES = tuple(
     f"{kind}_{what}"
     for kind in ("alkyl", "dialkyl")
     for what in ("rho", "ortho_acceptor", "ortho_group", "ortho_size")
 )
-SHARED_PARAMETERS = ("base", "rho", "para_donor", *ORTHO_FEATURES, *NITROGEN_FEATURES, *AMINE_FEATURES)
+SHARED_PARAMETERS = (
+    *("base", "rho", "para_donor"),
+    *ORTHO_FEATURES,
+    *NITROGEN_FEATURES,
+    *AMINE_FEATURES,
+    "dialkyl_ortho_hbond",
+)
 """Parameters that are no group constants and need one position only."""
 
 KIN_MARK = "~"
 """Names of what kin have in common carry it: `para:~ester`."""
 
 ALLYLIC = re.compile(r"\*C(C=C|C#C|C\(C\)=C|c)")
+BRANCHED = re.compile(r"\*CC\(")
+"""Isobutyl and the like: the branch stands one carbon off, over the nitrogen's lone pair."""
 SATURATED = re.compile(r"\*[C()0-9]+")
 SAME_CONSTANT = 1e-6
 CHARGE_SIGMA = 0.33
@@ -241,13 +250,12 @@ def _ortho(slot: Slot, group: Substituent, scales: GroupScales) -> Alone:
     if known.known and not scales.holds(f"ortho:{group.short}", group.sigma_para.value):
         _add(features, "rho", -tau * known.value)
         return Alone(features, variance + (scales.rho * tau * known.sd) ** 2, known.value, "ortho")
-    binds = group.hbond_acceptor and group.twistable and group.para_acceptor
     _add(features, "ortho_field", -tau * field(group))
     _add(features, "ortho_resonance", -tau * resonance(group))
     _add(features, "ortho_acceptor", -tau * through_resonance(group))
     _add(features, "ortho_size", tau * nature(group).hydrocarbon)
     _add(features, "ortho_large", tau * nature(group).largest)
-    _add(features, "ortho_hbond_acceptor", tau * float(binds))
+    _add(features, "ortho_hbond_acceptor", tau * float(takes_hydrogen_bond(group)))
     _add(features, "ortho_hbond_donor", tau * float(group.hbond_donor))
     _add(features, "ortho_charge", -tau * group.charge)
     _add(features, "ortho_anion", tau * float(group.smiles in STRONG_ANIONS))
@@ -262,6 +270,11 @@ def nitrogen_pull(group: Substituent) -> float:
     return 0.0 if SATURATED.fullmatch(group.smiles) else max(field(group), 0.0)
 
 
+def takes_hydrogen_bond(group: Substituent) -> bool:
+    """Whether an acceptor by resonance offers a neighbour its oxygen or nitrogen: nitro, carbonyl."""
+    return group.hbond_acceptor and group.twistable and group.para_acceptor
+
+
 def _on_nitrogen(group: Substituent, scales: GroupScales) -> Alone:
     """A group on the reporting nitrogen."""
     features: Features = {"nitrogen_group": 1.0}
@@ -270,12 +283,17 @@ def _on_nitrogen(group: Substituent, scales: GroupScales) -> Alone:
     _add(features, "nitrogen_medium", float(group.bulk == 2))
     _add(features, "nitrogen_large", float(group.bulk == len(SIZE) - 1))
     _add(features, "nitrogen_aryl", float(group.smiles.startswith("*c")))
+    _add(features, "nitrogen_branched", float(bool(BRANCHED.match(group.smiles))))
     variance = _own(features, "nitrogen", group, 0.0, 1.0, scales)
     return Alone(features, variance, nan, "nitrogen")
 
 
 def _with_amine(features: Features, slot: Slot, group: Substituent, amine: int) -> None:
-    """What changes for a ring group where the amine bears groups: rho rises, ortho groups twist the amine."""
+    """What changes for a ring group where the amine bears groups.
+
+    rho rises, for acceptors alone (4-methyl and 4-methoxy do to dimethylaniline what they do to aniline);
+    ortho groups twist the amine; a twisted dialkylammonium binds to an oxygen beside it (2-nitro, 2-ester).
+    """
     kind = "alkyl" if amine == AMINE_ALKYL else "dialkyl"
     tau = slot.transmission
     if slot.relation == "ortho":
@@ -283,6 +301,8 @@ def _with_amine(features: Features, slot: Slot, group: Substituent, amine: int) 
         _add(features, f"{kind}_ortho_acceptor", tau * own.pull_ortho)
         _add(features, f"{kind}_ortho_group", tau * own.bulky)
         _add(features, f"{kind}_ortho_size", tau * own.extra_size)
+        if amine != AMINE_ALKYL:
+            _add(features, "dialkyl_ortho_hbond", tau * float(takes_hydrogen_bond(group)))
     elif slot.relation in ("meta", "para"):
         value = group.sigma_meta if slot.column == "meta" else para_value(group)[0]
-        _add(features, f"{kind}_rho", -tau * value.value)
+        _add(features, f"{kind}_rho", -tau * max(value.value, 0.0))

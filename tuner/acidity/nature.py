@@ -27,6 +27,7 @@ WEAK_FIELD = 0.2
 
 ETHER_RESONANCE = -0.1
 METHYL = "*C"
+NITROSO = "*N=O"
 
 STRONG_ANIONS = ("*C(=O)[O-]", "*[O-]")
 """Anionic oxygen that an ortho hydroxyl binds by a strong hydrogen bond (salicylate, catecholate)."""
@@ -39,8 +40,7 @@ KIN = (
     ("carbamate", r"\*NC\(N\)=O|\*NC\(=O\)[ON].*"),
     ("alkoxy", r"\*OC(?!\(F\)|\(=O\)|\(C\)=O|#N).*"),
     ("alkylthio", r"\*SC(?!\(F\)|\(=O\)|\(C\)=O|#N).*"),
-    ("sulfone", r"\*S\(C\)\(=O\)=O|\*S\(=O\)\(=O\)(C(?!l|\(F\))|c).*"),
-    ("sulfonamide", r"\*S\(N\)\(=O\)=O|\*S\(=O\)\(=O\)N.*"),
+    ("sulfonyl", r"\*S\([CN]\)\(=O\)=O|\*S\(=O\)\(=O\)(?!\[O-\]|O).*"),
     ("normal alkyl", r"\*CC+(\(C\)C)?"),
     ("secondary alkyl", r"\*C\(C\)C+|\*C1C+1"),
     ("tertiary alkyl", r"\*C\(C\)\(C\)C[C()]*|\*C1\(C\)CCCCC1"),
@@ -57,8 +57,8 @@ _KIN = tuple((name, re.compile(pattern)) for name, pattern in KIN)
 def kin(smiles: str) -> str:
     """The kin that a group belongs to, or "".
 
-    >>> kin("*C(=O)OCC"), kin("*OC"), kin("*Cl")
-    ('ester', 'alkoxy', '')
+    >>> kin("*C(=O)OCC"), kin("*OC"), kin("*S(N)(=O)=O"), kin("*S(=O)(=O)[O-]"), kin("*Cl")
+    ('ester', 'alkoxy', 'sulfonyl', '', '')
     """
     return next((name for name, pattern in _KIN if pattern.fullmatch(smiles)), "")
 
@@ -84,6 +84,8 @@ class Nature:
     longer: float  # 1 for anything but hydrogen and methyl
     largest: float  # 1 for the largest bulk class
     extra_size: float  # size beyond methyl
+    takes_proton: float  # 1 for nitroso, which the proton of a 4-nitrosoaniline goes to
+    push_para: float  # donor strength felt from para
 
 
 def is_empty(group: Substituent) -> bool:
@@ -130,7 +132,7 @@ def ether_like(group: Substituent) -> bool:
 def nature(group: Substituent) -> Nature:
     """The coupling numbers of one group."""
     if is_empty(group):
-        return Nature(*([0.0] * 17))
+        return Nature(*([0.0] * 19))
     inductive = max(field(group), 0.0)
     acceptor = group.para_acceptor and group.sigma_para_minus.known
     conjugated = through_resonance(group)
@@ -156,4 +158,6 @@ def nature(group: Substituent) -> Nature:
         longer=float(group.smiles != METHYL),
         largest=float(group.bulk == len(SIZE) - 1),
         extra_size=max(size - SIZE[1], 0.0),
+        takes_proton=float(group.smiles == NITROSO),
+        push_para=0.0 if acceptor else max(-group.sigma_para.value, 0.0),
     )

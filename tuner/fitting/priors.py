@@ -19,8 +19,8 @@ from tuner.library.records import Substituent
 PRIOR_SOURCE = "memory:Perrin1981"
 
 SERIES_PRIORS = {
-    "phenol": {"base": (9.99, 0.05), "rho": (2.23, 0.10), "para_donor": (-0.3, 0.5)},
-    "aniline": {"base": (4.60, 0.05), "rho": (2.88, 0.10), "para_donor": (0.0, 0.5)},
+    "phenol": {"base": (9.99, 0.02), "rho": (2.23, 0.10), "para_donor": (-0.3, 0.5)},
+    "aniline": {"base": (4.60, 0.02), "rho": (2.88, 0.10), "para_donor": (0.0, 0.5)},
 }
 """para_donor: donors give less than sigma_para to a phenolate (4-methoxyphenol 10.1, not 10.6)."""
 
@@ -40,12 +40,21 @@ COMMON_PRIORS = {
     "nitrogen_medium": (0.6, 0.5),
     "nitrogen_large": (2.0, 1.0),
     "nitrogen_aryl": (-3.5, 2.0),
+    "nitrogen_branched": (-0.3, 0.3),
     "crowding": (0.0, 0.3),
     "buttressing": (0.0, 0.3),
+    "alkyl_between": (1.0, 0.7),
+    "alkyl_between_acceptors": (2.0, 1.0),
+    "dialkyl_between": (-0.8, 0.4),
+    "dialkyl_between_acceptors": (-0.8, 0.5),
     "alkyl_rho": (0.29, 0.15),
     "dialkyl_rho": (0.58, 0.15),
 }
-"""alkyl_rho, dialkyl_rho: rho rises from 2.88 (primary) to 3.46 (N,N-dialkyl)."""
+"""alkyl_rho, dialkyl_rho: rho rises from 2.88 (primary) to 3.46 (N,N-dialkyl).
+
+An N-alkyl amine turns aside from one ortho group; two turn it as one turns an N,N-dialkyl amine, which a
+second one cannot turn again: hence the priors of what happens between two ortho groups.
+"""
 
 GROUP_PRIORS = {("aniline", "para:NO"): (4.0, 1.0)}
 """4-Nitrosoanilines take up the proton at the nitroso oxygen, so the group weakens them far less than sigma
@@ -59,30 +68,31 @@ class Spreads:
     """Spreads that the fit sets by marginal likelihood. pKa units unless a factor or a share (see
     `GroupScales`).
 
-    `shared` is the correlation between a group's deviations in the two series; `noise_*` the scatter of
-    single determinations; `misfit_*` what each pair of groups (more with an ortho group in it), N-groups and
-    pairs of acceptors add (see `constants.Misfit`); `doubt` the true over the stated doubt of remembered
-    values.
+    `shared` is the correlation between a group's deviations in the two series (`shared_ortho`: at ortho);
+    `noise_*` the scatter of single determinations; `misfit_*` what each pair of groups (more with an ortho
+    group in it), N-groups and pairs of acceptors add (see `constants.Misfit`); `doubt` the true over the
+    stated doubt of remembered values.
     """
 
-    error_meta: float = 1.06
-    error_para: float = 1.09
-    ortho_phenol: float = 0.288
-    ortho_aniline: float = 0.24
-    ortho_polar_factor: float = 1.92
-    nitrogen: float = 0.37
-    kin_share: float = 0.88
-    shared: float = 0.73
-    noise_phenol: float = 0.114
-    noise_aniline: float = 0.087
-    misfit_pair: float = 0.053
-    misfit_ortho: float = 0.039
-    misfit_nitrogen: float = 0.104
-    misfit_acceptors: float = 0.103
-    doubt: float = 0.43
+    error_meta: float = 0.95
+    error_para: float = 1.13
+    ortho_phenol: float = 0.253
+    ortho_aniline: float = 0.217
+    ortho_polar_factor: float = 2.17
+    nitrogen: float = 0.29
+    kin_share: float = 0.95
+    shared: float = 0.753
+    shared_ortho: float = 0.665
+    noise_phenol: float = 0.08
+    noise_aniline: float = 0.069
+    misfit_pair: float = 0.039
+    misfit_ortho: float = 0.0292
+    misfit_nitrogen: float = 0.048
+    misfit_acceptors: float = 0.0684
+    doubt: float = 0.386
 
 
-BOUNDED = ("kin_share", "shared")
+BOUNDED = ("kin_share", "shared", "shared_ortho")
 """Shares between 0 and 1; fitted on a logit scale, everything else on a log scale."""
 
 SPREAD_PRIORS = {
@@ -94,6 +104,7 @@ SPREAD_PRIORS = {
     "nitrogen": (np.log(0.3), 0.5),
     "kin_share": (0.8, 0.7),
     "shared": (0.0, 1.0),
+    "shared_ortho": (0.0, 1.0),
     "noise_phenol": (np.log(0.06), 0.4),
     "noise_aniline": (np.log(0.06), 0.4),
     "misfit_pair": (np.log(0.06), 0.4),
