@@ -61,6 +61,8 @@ COUPLINGS = (
     Coupling("dialkyl_between_acceptors", "oo", "bulky_pull", "bulky_pull", amine=AMINE_DIALKYL),
     Coupling("alkyl_acceptors_op", "op", "pull_ortho", "pull_para", amine=AMINE_ALKYL),
     Coupling("dialkyl_acceptors_op", "op", "pull_ortho", "pull_para", amine=AMINE_DIALKYL),
+    Coupling("acceptor_and_oxide", "om", "turned_acceptor", "oxide"),
+    Coupling("acceptor_and_oxide", "mp", "oxide", "turned_acceptor"),
     Coupling("acceptor_and_donor_op", "op", "pull_ortho", "push_para"),
     Coupling("dialkyl_longer_acceptor", "pn", "resonance_pull", "longer", amine=AMINE_DIALKYL),
     Coupling("dialkyl_longer_nitroso", "pn", "takes_proton", "longer", amine=AMINE_DIALKYL),

@@ -28,6 +28,7 @@ WEAK_FIELD = 0.2
 ETHER_RESONANCE = -0.1
 METHYL = "*C"
 NITROSO = "*N=O"
+OXIDE = "*[O-]"
 
 STRONG_ANIONS = ("*C(=O)[O-]", "*[O-]")
 """Anionic oxygen that an ortho hydroxyl binds by a strong hydrogen bond (salicylate, catecholate)."""
@@ -86,6 +87,7 @@ class Nature:
     extra_size: float  # size beyond methyl
     takes_proton: float  # 1 for nitroso, which the proton of a 4-nitrosoaniline goes to
     push_para: float  # donor strength felt from para
+    oxide: float  # 1 for anionic oxygen on the ring
 
 
 def is_empty(group: Substituent) -> bool:
@@ -132,7 +134,7 @@ def ether_like(group: Substituent) -> bool:
 def nature(group: Substituent) -> Nature:
     """The coupling numbers of one group."""
     if is_empty(group):
-        return Nature(*([0.0] * 19))
+        return Nature(*([0.0] * 20))
     inductive = max(field(group), 0.0)
     acceptor = group.para_acceptor and group.sigma_para_minus.known
     conjugated = through_resonance(group)
@@ -159,5 +161,6 @@ def nature(group: Substituent) -> Nature:
         largest=float(group.bulk == len(SIZE) - 1),
         extra_size=max(size - SIZE[1], 0.0),
         takes_proton=float(group.smiles == NITROSO),
+        oxide=float(group.smiles == OXIDE),
         push_para=0.0 if acceptor else max(-group.sigma_para.value, 0.0),
     )

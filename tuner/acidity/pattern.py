@@ -51,6 +51,7 @@ COUPLING_WORDS = {
     "dialkyl_between_acceptors": "N,N-dialkyl amine between two ortho acceptors",
     "alkyl_acceptors_op": "ortho and para acceptors on an N-alkyl amine",
     "dialkyl_acceptors_op": "ortho and para acceptors on an N,N-dialkyl amine",
+    "acceptor_and_oxide": "acceptor already leaned on by an anionic oxygen",
     "acceptor_and_donor_op": "ortho acceptor and para donor",
     "dialkyl_longer_acceptor": "groups longer than methyl on nitrogen and para acceptor",
     "dialkyl_longer_nitroso": "groups longer than methyl on nitrogen and para nitroso",
