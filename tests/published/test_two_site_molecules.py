@@ -1,7 +1,8 @@
 """Macroscopic constants of molecules with two and three ionising groups, as handbooks print them.
 
-Values as remembered from the tables "Dissociation constants of organic acids and bases" of the CRC Handbook of
-Chemistry and Physics and from Serjeant & Dempsey 1979 (nitroresorcinol), 25 degC, not checked against print.
+Values as remembered from the tables "Dissociation constants of organic acids and bases" of the CRC Handbook
+of Chemistry and Physics and from Serjeant & Dempsey 1979 (nitroresorcinol), 25 degC, not checked against
+print.
 Steps are printed in ascending order; a tautomer or a zwitterion is no concern of the reader of a titration.
 """
 
