@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import subprocess
 import sys
+from pathlib import Path
 from time import perf_counter
 
 import pytest
@@ -108,3 +109,26 @@ def test_a_closed_pipe_is_no_fault() -> None:
     done = subprocess.run(["bash", "-c", command], capture_output=True, text=True, check=True)
     assert "Traceback" not in done.stderr
     assert "groups" in done.stdout
+
+
+@pytest.mark.parametrize(
+    "command",
+    [
+        "-c 'from tuner.cli import main; main()' explain Oc1ccccc1",
+        "-m tuner.fitting fit --in-project --keep-spreads --out FOLDER",
+    ],
+)
+def test_a_reader_that_reads_nothing_is_no_fault(command: str, tmp_path: Path) -> None:
+    """Code 0 and silence, also where the command parser or the interpreter meets the pipe first."""
+    words = command.replace("FOLDER", str(tmp_path))
+    shell = f"{sys.executable} {words} | true; exit ${{PIPESTATUS[0]}}"
+    done = subprocess.run(["bash", "-c", shell], capture_output=True, text=True, check=False)
+    lines = [line for line in done.stderr.splitlines() if not line.startswith("note: ")]
+    assert (done.returncode, lines) == (0, [])
+
+
+def test_an_unknown_kind_is_told_in_plain_words(tuner: Tuner) -> None:
+    seen = tuner("show", "nix")
+    assert seen.code == 2
+    assert "Value error" not in seen.fault
+    assert "'nix' is not one of 'substituents', 'series', 'cores', 'stock', 'reactions'" in seen.fault

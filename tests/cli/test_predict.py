@@ -4,13 +4,15 @@ from __future__ import annotations
 
 import csv
 import re
+from collections.abc import Callable
+from math import nan
 from pathlib import Path
 
 import pytest
 
 import tuner.cli.predict as predict_command
 from tests.cli.conftest import Tuner
-from tuner.cli.predict import ADDED
+from tuner.cli.predict import ADDED, Desk
 from tuner.errors import LibraryError
 from tuner.prediction.records import Prediction
 
@@ -37,6 +39,11 @@ def read(path: str) -> list[dict[str, str]]:
     """A CSV as rows."""
     with Path(path).open(encoding="utf-8", newline="") as file:
         return list(csv.DictReader(file))
+
+
+def desk_of(predict: Callable[[str], Prediction]) -> Callable[..., Desk]:
+    """Opens a desk at which this function predicts."""
+    return lambda *asked: Desk(predict, lambda answer: nan, lambda smiles, wanted: (nan,) * len(wanted))
 
 
 def test_order_and_input_columns_are_kept_and_the_promised_ones_added(tuner: Tuner, table: Path) -> None:
@@ -104,6 +111,15 @@ def test_without_out_a_table_is_shown(tuner: Tuner, table: Path) -> None:
         (("--ionic-strength-m", "150"), "mol/L"),
         (("--out", "molecules.csv"), "replace the input"),
         (("--overlay", "none"), "library folder does not exist"),
+        (("--cosolvent", "ethanol"), "without a share"),
+        (("--cosolvent", "vodka", "--cosolvent-mass-percent", "40"), "'vodka' is not known"),
+        (("--cosolvent", "ethanol", "--cosolvent-mass-percent", "95"), "outside 0 to 80"),
+        (("--offset", "60"), "pKa units"),
+        (("--offset-sd", "-1"), "offset-sd"),
+        (("--surface-potential-mv", "5000"), "mV"),
+        (("--surface-potential-mv", "nan"), "mV"),
+        (("--at-ph", "74"), "pH 74 is outside"),
+        (("--measured", "none.csv"), "none.csv"),
     ],
 )
 def test_a_slip_is_one_line_and_leaves_nothing(
@@ -126,7 +142,7 @@ def test_a_defect_costs_one_row_and_not_the_table(
             raise ZeroDivisionError
         return Prediction(smiles, pka=9.0, pka_sd=0.1)
 
-    monkeypatch.setattr(predict_command, "predictor", lambda medium, overlay: fails_on_aniline)
+    monkeypatch.setattr(predict_command, "open_desk", desk_of(fails_on_aniline))
     assert tuner("predict", str(table), "--out", "out.csv").code == 0
     notes = {row["name"]: row["note"] for row in read("out.csv")}
     assert "ZeroDivisionError" in notes["aniline"]
@@ -139,7 +155,7 @@ def test_a_fault_of_the_library_stops_the_table(
     def fails(smiles: str) -> Prediction:
         raise LibraryError("a cell is empty", place="groups.csv, row 3")
 
-    monkeypatch.setattr(predict_command, "predictor", lambda medium, overlay: fails)
+    monkeypatch.setattr(predict_command, "open_desk", desk_of(fails))
     seen = tuner("predict", str(table), "--out", "out.csv")
     assert (seen.code, Path("out.csv").exists()) == (2, False)
     assert "groups.csv, row 3" in seen.fault
@@ -169,3 +185,65 @@ def test_what_cannot_be_explained_says_why(tuner: Tuner) -> None:
     seen = tuner("explain", "Cc1ccccc1")
     assert seen.code == 2
     assert "no ionising phenol or aniline" in seen.fault
+
+
+def test_every_part_of_the_medium_can_be_told(tuner: Tuner, table: Path) -> None:
+    told = ("--offset", "0.4", "--offset-sd", "0.3", "--surface-potential-mv", "-59.16")
+    tuner("predict", str(table), "--out", "water.csv")
+    tuner("predict", str(table), "--out", "film.csv", *told)
+    water, film = read("water.csv")[0], read("film.csv")[0]
+    # 0.4 as measured, and 1.00 at 59.16 mV and 25 degC (2.303 RT/F); two roundings
+    assert float(film["pka"]) - float(water["pka"]) == pytest.approx(1.4, abs=0.01)
+    assert float(film["pka_sd"]) > 0.3
+    tuner(
+        "predict", str(table), "--out", "wet.csv", "--cosolvent", "ethanol", "--cosolvent-mass-percent", "30"
+    )
+    wet = read("wet.csv")
+    assert float(wet[0]["pka"]) > float(water["pka"]) + 0.2  # a neutral acid weakens
+    assert "rough physical estimate" in wet[0]["note"]
+
+
+def test_ones_own_measured_value_stands_beside_the_prediction(tuner: Tuner, table: Path) -> None:
+    Path("own.csv").write_text("smiles,pka,source\nOc1ccccc1,9.70,note book 3\n", encoding="utf-8")
+    tuner("predict", str(table), "--out", "out.csv", "--measured", "own.csv", "--offset", "0.5")
+    rows = {row["name"]: row for row in read("out.csv")}
+    assert float(rows["phenol"]["measured_pka"]) == pytest.approx(10.20, abs=0.005)  # 9.70 + 0.5
+    assert rows["phenol"]["measured_source"] == "note book 3"
+    assert float(rows["4-nitrophenol"]["measured_pka"]) == pytest.approx(7.65, abs=0.05)  # 7.15 in print
+    assert rows["toluene"]["measured_pka"] == ""
+
+
+def test_the_share_of_the_base_form_is_told_on_request(tuner: Tuner, table: Path) -> None:
+    tuner("predict", str(table), "--out", "out.csv", "--at-ph", "7.0")
+    row = read("out.csv")[1]
+    # Henderson-Hasselbalch; 0.02: the pKa is rounded to two decimals
+    assert float(row["alpha"]) == pytest.approx(1 / (1 + 10 ** (float(row["pka"]) - 7.0)), abs=0.02)
+    assert read("out.csv")[3]["alpha"] == ""
+
+
+def test_a_structure_instead_of_a_file_is_sent_to_the_right_command(tuner: Tuner) -> None:
+    seen = tuner("predict", "Oc1ccccc1")
+    assert (seen.code, "tuner explain SMILES" in seen.fault) == (2, True)
+
+
+def test_an_explanation_adds_up_in_the_medium_too(tuner: Tuner) -> None:
+    seen = tuner("explain", "CN(C)c1ccc(N=Nc2ccc(C(=O)O)cc2)cc1", "--temperature-c", "37", "--offset", "0.3")
+    assert seen.code == 0, seen.err
+    table, results = seen.out.split("remark")[1].split("sum: pKa' in the medium")
+    numbers = [
+        float(hit.group(1).replace("−", "-"))
+        for line in table.split("sum: pKa at 25")[1].splitlines()
+        if (hit := re.search(r"\s([+−]?\d+\.\d\d)(?:\s+\d\.\d\d)?\s*$", line))
+    ]
+    total = re.match(r"\s+(\d+\.\d\d)", results)
+    assert total is not None
+    # the first is the sum at 25 degC; 0.005 per term: each is rounded to two decimals
+    assert sum(numbers) == pytest.approx(float(total.group(1)), abs=0.005 * (len(numbers) + 1))
+    assert len(numbers) > 2
+
+
+def test_an_explanation_tells_sites_and_base_form(tuner: Tuner) -> None:
+    out = tuner("explain", "OC(=O)c1ccc(O)cc1", "--at-ph", "9.3").out
+    assert re.search(r"each site alone +phenol \d\.\d\d, benzoic acid 4\.\d\d", out)
+    assert re.search(r"base form +10 % at pH 8\.\d\d, 50 % at 9\.\d\d, 90 % at 10\.\d\d", out)
+    assert "% at pH 9.3" in out

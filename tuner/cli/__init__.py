@@ -10,6 +10,9 @@ from tuner.errors import TunerError
 
 EXIT_OK, EXIT_FAULT, EXIT_INTERRUPTED = 0, 2, 130
 
+PARSER_PREFIX = "Value error, "
+"""What the command parser puts before its own words on a choice that there is not."""
+
 
 def main(arguments: Sequence[str] | None = None) -> None:
     """Run one command line and end the process: 0 done, 2 something the user can mend, 130 interrupted.
@@ -35,13 +38,23 @@ def run(arguments: Sequence[str] | None = None) -> int:
         print("tuner: interrupted; nothing was left half-written", file=sys.stderr)
         return EXIT_INTERRUPTED
     except BrokenPipeError:  # the reader of a pipe has gone, as `| head` does: no fault of anybody
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
-        return EXIT_OK
+        return _reader_gone()
+    except SystemExit as ending:
+        if isinstance(ending.__context__, BrokenPipeError):  # the command parser ends with 1 there
+            return _reader_gone()
+        raise
     except Exception as fault:
         words = getattr(fault, "format_message", None)
         if words is None:
             raise
-        return _fault(" ".join(str(words()).split()).rstrip(".") + " (tuner --help lists what there is)")
+        text = " ".join(str(words()).split()).rstrip(".").replace(PARSER_PREFIX, "")
+        return _fault(f"{text} (tuner --help lists what there is)")
+
+
+def _reader_gone() -> int:
+    """Send what is still to be written nowhere, so that the interpreter does not stumble on it at its end."""
+    os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+    return EXIT_OK
 
 
 def _fault(text: str) -> int:

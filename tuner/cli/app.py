@@ -9,13 +9,21 @@ from typing import Annotated
 import typer
 
 from tuner.cli.options import (
+    AtPh,
     BriefArgument,
+    Cosolvent,
+    CosolventMassPercent,
     IonicStrengthM,
+    Measured,
+    Offset,
+    OffsetSd,
     Overlay,
     Quiet,
     Seed,
     SmilesArgument,
+    SurfacePotentialMv,
     TemperatureC,
+    medium_of,
 )
 
 app = typer.Typer(
@@ -100,13 +108,29 @@ def predict(
     ] = None,
     temperature_c: TemperatureC = 25.0,
     ionic_strength_m: IonicStrengthM = 0.0,
+    cosolvent: Cosolvent = "",
+    cosolvent_mass_percent: CosolventMassPercent = 0.0,
+    offset: Offset = 0.0,
+    offset_sd: OffsetSd = 0.0,
+    surface_potential_mv: SurfacePotentialMv = 0.0,
+    at_ph: AtPh = None,
+    measured: Measured = None,
     overlay: Overlay = None,
     quiet: Quiet = False,
 ) -> None:
     """Predict the pKa of every molecule of a table."""
     from tuner.cli.predict import run
 
-    run(molecules, out, temperature_c, ionic_strength_m, overlay, quiet=quiet)
+    medium = medium_of(
+        temperature_c,
+        ionic_strength_m,
+        cosolvent,
+        cosolvent_mass_percent,
+        offset,
+        offset_sd,
+        surface_potential_mv,
+    )
+    run(molecules, out, medium, overlay, measured=measured, at_ph=at_ph, quiet=quiet)
 
 
 @app.command()
@@ -114,12 +138,28 @@ def explain(
     smiles: SmilesArgument,
     temperature_c: TemperatureC = 25.0,
     ionic_strength_m: IonicStrengthM = 0.0,
+    cosolvent: Cosolvent = "",
+    cosolvent_mass_percent: CosolventMassPercent = 0.0,
+    offset: Offset = 0.0,
+    offset_sd: OffsetSd = 0.0,
+    surface_potential_mv: SurfacePotentialMv = 0.0,
+    at_ph: AtPh = None,
+    measured: Measured = None,
     overlay: Overlay = None,
 ) -> None:
     """Show one pKa as a sum of its parts."""
     from tuner.cli.explain import run
 
-    run(smiles, temperature_c, ionic_strength_m, overlay)
+    medium = medium_of(
+        temperature_c,
+        ionic_strength_m,
+        cosolvent,
+        cosolvent_mass_percent,
+        offset,
+        offset_sd,
+        surface_potential_mv,
+    )
+    run(smiles, medium, overlay, measured=measured, at_ph=at_ph)
 
 
 @app.command()

@@ -10,22 +10,27 @@ from rich.table import Table
 
 from tuner.brief.records import Medium
 from tuner.cli.console import WIDEST, note, say, show, table
-from tuner.cli.predict import predictor
+from tuner.cli.predict import Desk, open_desk
 from tuner.errors import StructureError
 from tuner.library import Library, load_library
 from tuner.library.catalogue import split_citation
+from tuner.prediction.explain import medium_rest, sites_terms
 from tuner.prediction.records import Prediction, Term
 from tuner.report.digits import drift, pka_text, signed
 from tuner.report.wording import CAUTIONS, medium_in_words
 
 LONGEST = 60
 """Signs of a SMILES that an error repeats."""
+SAME_PH = 0.05
+"""A group that shares its proton is half ionised elsewhere than at the step that is given."""
 
 
-def run(smiles: str, temperature_c: float, ionic_strength_m: float, overlay: Path | None) -> None:
+def run(
+    smiles: str, medium: Medium, overlay: Path | None, *, measured: Path | None, at_ph: float | None
+) -> None:
     """Predict and print the sum, the medium, the constants of the whole molecule, and what was assumed."""
-    medium = Medium(temperature_c=temperature_c, ionic_strength_m=ionic_strength_m)
-    answer = predictor(medium, overlay)(smiles)
+    desk = open_desk(medium, overlay, measured, at_ph)
+    answer = desk.predict(smiles)
     if not answer.found:
         reason = "; ".join(answer.notes) or "no value"
         shown = smiles if len(smiles) <= LONGEST else smiles[: LONGEST - 3] + "..."
@@ -33,8 +38,9 @@ def run(smiles: str, temperature_c: float, ionic_strength_m: float, overlay: Pat
     name = f"{answer.substitution} on {answer.core}" if answer.core else answer.substitution
     say(f"{answer.treated}: {name}, reporting atom {answer.reporting_atom}")
     show(_sum_table(answer))
-    for line in _results(answer, medium):
-        say(line)
+    for subject, text in _results(answer, medium, desk, at_ph):
+        say(f"  {subject:<18}{text}")
+    say(f"  {CAUTIONS[0]}")
     for line in _sources(answer, load_library(overlay)):
         say(line)
     note(answer.notes)
@@ -62,10 +68,13 @@ def _sum_table(answer: Prediction) -> Table:
         ("remark", "left"),
     )
     rows = [_term_row(n, term) for n, term in enumerate(answer.terms)]
-    total = sum(term.value for term in answer.terms)
-    rows.append(("", "sum: pKa at 25 °C, no salt", "", "", f"{total:.2f}", "", ""))
-    rows += [_term_row(1, term) for term in answer.medium_terms]
-    return table("Thermodynamic pKa of the reporting group as a sum", headings, rows)
+    rows += [_term_row(1, term) for term in sites_terms(answer)]
+    rows.append(("", "sum: pKa at 25 °C, no salt", "", "", f"{answer.pka25:.2f}", "", ""))
+    moved = medium_rest(answer)
+    rows += [_term_row(1, term) for term in moved]
+    if moved:
+        rows.append(("", "sum: pKa' in the medium", "", "", f"{answer.pka:.2f}", "", ""))
+    return table("pKa of the reporting group as a sum", headings, rows)
 
 
 def _term_row(n: int, term: Term) -> tuple[str, ...]:
@@ -91,15 +100,24 @@ def _steps(answer: Prediction) -> str:
     )
 
 
-def _results(answer: Prediction, medium: Medium) -> list[str]:
-    """The numbers that follow from the sum."""
-    lines = [f"  conditional pKa'  {pka_text(answer.pka, answer.pka_sd)} in {medium_in_words(medium)}"]
+def _results(answer: Prediction, medium: Medium, desk: Desk, at_ph: float | None) -> list[tuple[str, str]]:
+    """The numbers that follow from the sum: what, and how much."""
+    told = [("conditional pKa'", f"{pka_text(answer.pka, answer.pka_sd)} in {medium_in_words(medium)}")]
     if isfinite(answer.dpka_dt):
-        lines.append(f"  drift             {drift(answer.dpka_dt)} pKa units per 10 K")
+        told.append(("drift", f"{drift(answer.dpka_dt)} pKa units per 10 K"))
+    if len(answer.sites) > 1:
+        alone = ", ".join(f"{site.kind.replace('_', ' ')} {site.pka25:.2f}" for site in answer.sites)
+        told.append(("each site alone", f"{alone} (25 °C, all others uncharged)"))
     if answer.macroscopic_pkas:
-        lines.append(f"  whole molecule    macroscopic pKa' {_steps(answer)}")
+        told.append(("whole molecule", f"macroscopic pKa' {_steps(answer)}"))
+    low, half, high = desk.ph_of_shares(answer.smiles, (0.1, 0.5, 0.9))
+    if isfinite(low + half + high):
+        alone = " (this group alone)" if abs(half - answer.pka) > SAME_PH else ""
+        told.append(("base form", f"10 % at pH {low:.2f}, 50 % at {half:.2f}, 90 % at {high:.2f}{alone}"))
+    if desk.alpha is not None:
+        told.append(("", f"{100 * desk.alpha(answer.smiles):.3g} % at pH {at_ph:g}"))
     if answer.known is not None:
-        known = answer.known
-        lines.append(f"  measured          {known.pka:.2f} at {known.temperature_c:g} °C ({known.source})")
-    lines.append(f"  {CAUTIONS[0]}")
-    return lines
+        known, there = answer.known, desk.measured(answer)
+        told.append(("measured", f"{known.pka:.2f} at {known.temperature_c:g} °C ({known.source})"))
+        told.append(("", f"in the medium, as the prediction changes: {there:.2f}"))
+    return told

@@ -174,7 +174,7 @@ def _cores(library: Library) -> None:
         for c in library.cores.values()
     ]
     caption = "parent: hydrogen at every open position; drawing and positions: tuner show cores NAME"
-    show(table(f"{len(rows)} cores", headings, rows, caption))
+    show(table(f"{len(rows)} cores", headings, rows, caption), piped=LONG_LINES)
 
 
 def _one_core(core: Core, library: Library, svg: Path | None) -> None:

@@ -1,4 +1,9 @@
-"""How does a pKa go from 25 degC in pure water to the working medium, summand by summand?"""
+"""How does a pKa go from its groups to the working medium, summand by summand?
+
+What the ring model gives are summands of one site beside neighbours in one state. Where neighbours change
+their state near the transition, the pH of half ionisation lies elsewhere; the difference is a summand of its
+own, so that the sum as shown adds up.
+"""
 
 from __future__ import annotations
 
@@ -6,10 +11,12 @@ from tuner.acidity.cosolvent import cosolvent_shift
 from tuner.acidity.medium import davies_term, surface_potential_shift, vant_hoff_line
 from tuner.brief.records import Medium
 from tuner.library.records import Series
-from tuner.prediction.records import Term
+from tuner.prediction.records import Prediction, Term
 
 SMALLEST = 5e-4
 """pKa units; smaller summands are not listed."""
+SMALLEST_SHOWN = 5e-3
+"""pKa units; the same where two decimals are shown and nothing but rounding would be told."""
 
 
 def medium_terms(series: Series, medium: Medium, pka25: float, charge: int) -> tuple[Term, ...]:
@@ -66,3 +73,24 @@ def medium_terms(series: Series, medium: Medium, pka25: float, charge: int) -> t
         Term("surface", f"potential of {medium.surface_potential_mv:g} mV", surface, source="definition"),
     )
     return tuple(term for term in terms if abs(term.value) >= SMALLEST)
+
+
+def sites_terms(answer: Prediction) -> tuple[Term, ...]:
+    """What other ionising groups add to the sum of the terms at 25 degC without salt; none where they add
+    nothing.
+    """
+    rest = answer.pka25 - sum(term.value for term in answer.terms)
+    return (_of_others(rest),) if abs(rest) >= SMALLEST_SHOWN else ()
+
+
+def medium_rest(answer: Prediction) -> tuple[Term, ...]:
+    """What the medium adds, cause by cause, and a last term for what it does by way of other ionising
+    groups; they add up to pKa' - pKa25.
+    """
+    rest = answer.pka - answer.pka25 - sum(term.value for term in answer.medium_terms)
+    return (*answer.medium_terms, _of_others(rest)) if abs(rest) >= SMALLEST_SHOWN else answer.medium_terms
+
+
+def _of_others(value: float) -> Term:
+    """The summand of other ionising groups."""
+    return Term("sites", "other ionising groups", value, source="definition")
