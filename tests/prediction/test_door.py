@@ -119,7 +119,7 @@ def test_an_estimated_group_is_named_in_the_notes_and_widens_the_error(door: Mol
     [
         ("Oc1ccc2ccccc2c1/N=N/c1ccccc1", "hydrazone"),
         ("O=Nc1ccc(O)cc1", "oxime"),
-        ("Oc1c(N=Nc2ccccc2)ccc2cccc(N)c12", "not modelled"),
+        ("Oc1c(N=Nc2ccccc2)ccc2cccc(N)c12", "hydrazone"),
         ("Nc1c([N+](=O)[O-])cc([N+](=O)[O-])cc1[N+](=O)[O-]", "acidity function"),
         ("[2H]Oc1ccccc1", "isotope"),
     ],

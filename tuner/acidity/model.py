@@ -8,6 +8,7 @@ parent and borrows the constants of its series.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
+from dataclasses import replace
 from pathlib import Path
 
 from tuner.acidity.constants import SCAFFOLDS, AcidityConstants, load_constants
@@ -88,12 +89,13 @@ class AcidityModel:
             sd = core.parent_pka.sd if core.parent_pka.sd == core.parent_pka.sd else UNSTATED_PARENT_SD
             parent = Value(to_25_c(core.parent_pka.value, series, core.parent_temperature_c), sd)
             source = core.parent_pka_source or core.source
+        scatter = core.scatter if core is not None else 0.0
         if prepared.scaffold not in SCAFFOLDS:
             if not parent.known:
                 raise LibraryError(
                     f"core '{prepared.name}' has no parent_pka", remedy="give value, sd and source"
                 )
-            return Base(parent, source), CoreShift(), {}
+            return Base(parent, source), CoreShift(variance_taken=-(scatter**2)), {}
         fixed = {slot.label: self._resolve(slot.fixed) for slot in prepared.slots if slot.fixed}
         shift = core_shift(self._constants[prepared.scaffold], prepared, fixed, parent, source)
-        return Base(None), shift, fixed
+        return Base(None), replace(shift, variance_taken=shift.variance_taken - scatter**2), fixed

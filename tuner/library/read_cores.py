@@ -12,12 +12,14 @@ from tuner.library.tables import Table, read_toml
 
 OPEN_POSITION = re.compile(r"\[\*:(\d+)\]")
 COLUMNS = ("", "meta", "para", "para_minus", "ortho", "nitrogen")
+SCATTER_LIMIT = 3.0
+"""pKa units; a core whose analogs stray further has no model."""
 TRANSMISSION_LIMIT = 2.0
 """Largest |tau|: a bridge that passes on twice the effect of a direct position does not exist."""
 
 CORE_KEYS = (
-    "title", "smiles", "series", "labels", "reporting_smarts", "parent_pka", "positions", "assembly",
-    "survives", "destroyed_by", "colours", "cautions", "note", "source",
+    "title", "smiles", "series", "labels", "reporting_smarts", "parent_pka", "scatter", "positions",
+    "assembly", "survives", "destroyed_by", "colours", "cautions", "note", "source",
 )  # fmt: skip
 
 
@@ -45,6 +47,7 @@ def _core(name: str, table: Table, default_source: str) -> Core:
         parent_pka=pka,
         parent_pka_source=pka_source,
         parent_temperature_c=temperature,
+        scatter=table.number("scatter", 0.0, SCATTER_LIMIT, 0.0),
         given_positions=_positions(table.table("positions"), labels),
         assembly=table.texts("assembly"),
         survives=table.texts("survives"),

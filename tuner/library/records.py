@@ -116,6 +116,7 @@ class Core:
     parent_pka: Value = Value()
     parent_pka_source: str = ""
     parent_temperature_c: float = 25.0
+    scatter: float = 0.0  # further standard error of every analog (pKa units) that the ring model leaves out
     given_positions: Mapping[str, Position] = field(default_factory=dict)
     assembly: tuple[str, ...] = ()  # names of joining reactions that can build it
     survives: tuple[str, ...] = ()  # condition tags the core withstands

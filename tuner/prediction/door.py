@@ -6,7 +6,7 @@ that says why; nothing here raises for a bad molecule.
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import replace
 from functools import lru_cache
 from math import hypot, nan, sqrt
@@ -17,16 +17,17 @@ from tuner.brief.records import Medium
 from tuner.errors import TunerError
 from tuner.library.catalogue import Library
 from tuner.library.records import MeasuredPka
-from tuner.prediction.estimate import Estimator, effect_of
+from tuner.prediction.estimate import Estimator
 from tuner.prediction.explain import medium_terms
-from tuner.prediction.held import AZO_PROTONATION, AZO_PROTONATION_RHO, HELD_PAIRS, NOT_MODELLED
+from tuner.prediction.further_steps import Steps, further_steps
+from tuner.prediction.held import HELD_PAIRS
 from tuner.prediction.ionisation import ALWAYS_IONISED, Ionisation
 from tuner.prediction.records import Prediction
 from tuner.prediction.ring_model import RingModel
 from tuner.prediction.sites import REPORTING_KINDS, SiteMaker, SiteTable
 from tuner.structure.charging import bonds_between, formal_charge
 from tuner.structure.dissect import dissect
-from tuner.structure.molecule import has_match, identity_key, read_molecule
+from tuner.structure.molecule import identity_key, read_molecule
 from tuner.structure.records import Dissection
 from tuner.structure.scaffolds import index_cores
 
@@ -36,17 +37,13 @@ CLOSE_SD = 0.15
 SCALE_PH = (-12.0, 16.0)
 """Constants outside this range are not given: no acidity scale in water reaches there."""
 WATER_PH = (0.0, 14.0)
-MACROSCOPIC_SD_LIMIT = 0.8
-"""Stepwise constants of a molecule are left out where the least sure of them is less sure than this (pKa
-units).
+MACROSCOPIC_SD_LIMIT = 1.6
+"""Stepwise constants of a molecule are left out where one of them is less sure than this (pKa units); outside
+the pH scale of water only that one is.
 """
 OWN_STEP = 0.75  # a step in which the reporting site loses more than this share of its proton is its own
 GOOD_PART = 0.35
 SHARED_NOTE = "shares its proton with another group; the step in which it first ionises is given"
-
-
-Steps = tuple[tuple[float, float, str], ...]
-"""(pKa, standard error, kind of site) of some macroscopic steps."""
 
 
 class MoleculeDoor:
@@ -97,9 +94,6 @@ class MoleculeDoor:
         if not found.sites or found.sites[0].kind not in REPORTING_KINDS:
             note = "no ionising phenol or aniline in this molecule"
             return Prediction(str(smiles), found.smiles, notes=(*found.notes, note))
-        for pattern, why in NOT_MODELLED:
-            if has_match(found.smiles, pattern):
-                return Prediction(str(smiles), found.smiles, notes=(*found.notes, why))
         return self._treated(str(smiles), found)
 
     def known(self, smiles: str) -> MeasuredPka | None:
@@ -133,19 +127,7 @@ class MoleculeDoor:
         if not ionisation.treatable:
             notes.append(f"{len(ionisation.free)} ionising groups; at most {MOST_SITES} are treated")
             return replace(answer, notes=tuple(dict.fromkeys(notes)))
-        return self._filled(answer, table, ionisation, notes, self._strong_acid_step(found))
-
-    def _strong_acid_step(self, found: Dissection) -> tuple[tuple[float, float, str], ...]:
-        """The azo group's own step in strong acid, for hydroxyazo dyes."""
-        lead = found.sites[0]
-        if lead.core not in AZO_PROTONATION:
-            return ()
-        pka, sd = AZO_PROTONATION[lead.core]
-        for group in lead.groups:
-            if group.label.endswith("'"):
-                record, _ = self.estimator.group(group.smiles)
-                pka -= AZO_PROTONATION_RHO * effect_of(record).para
-        return ((pka, sd, "azo"),)
+        return self._filled(answer, table, ionisation, notes, further_steps(found, self.estimator))
 
     def _filled(
         self, answer: Prediction, table: SiteTable, ionisation: Ionisation, notes: list[str], extra: Steps
@@ -170,7 +152,7 @@ class MoleculeDoor:
         notes += _range_notes(pka)
         charge = ionisation.charge_around(0, states, pka)
         intercept, slope = table.ions[0].effect.temperature_line(charge)
-        inside = [(p, s, k) for p, s, k in macroscopic if SCALE_PH[0] <= p <= SCALE_PH[1]]
+        inside = _tellable(macroscopic)
         doubt = max((s for _, s, k in inside if k not in ALWAYS_IONISED), default=0.0)
         if doubt > MACROSCOPIC_SD_LIMIT:
             notes.append(f"constants of the whole molecule are too unsure to be given (+-{doubt:.1f})")
@@ -224,6 +206,16 @@ def _known_values(measured: Iterable[MeasuredPka]) -> dict[str, MeasuredPka]:
         except TunerError:
             continue
     return found
+
+
+def _tellable(steps: Sequence[tuple[float, float, str]]) -> list[tuple[float, float, str]]:
+    """Steps on an acidity scale; outside the pH scale of water only those that are sure enough."""
+    return [
+        (p, s, k)
+        for p, s, k in steps
+        if SCALE_PH[0] <= p <= SCALE_PH[1]
+        and (WATER_PH[0] <= p <= WATER_PH[1] or s <= MACROSCOPIC_SD_LIMIT or k in ALWAYS_IONISED)
+    ]
 
 
 def _range_notes(pka: float) -> list[str]:

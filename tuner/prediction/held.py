@@ -3,11 +3,13 @@
 - Cores that hold two ionising groups in one chromophore (sulfonephthaleins, phthaleins,
   1,8-dihydroxynaphthalene).
 - Cores whose other groups are ionised at the transition and counted in the measured parent.
-- o,o'-Dihydroxyazo dyes: the two hydroxyls share a hydrogen bond with the azo group, which makes the first
-  proton leave early and the second late.
+- Further sites inside a core (hydrogen-bonded hydroxyls, a quinoline nitrogen).
+- o,o'-Dihydroxyazo dyes, 2,2'-dihydroxybiphenyls and -diphenylmethanes: the two hydroxyls share a hydrogen
+  bond, which makes the first proton leave early and the second late.
 - An ammonium or azonium proton that a neighbouring acid anion holds (dialkylanthranilic acids, methyl red,
   1-naphthylamine-8-sulfonic acid) leaves late.
-- Hydroxyazo dyes also take up a proton at the azo group in strong acid.
+- Hydroxyazo dyes also take up a proton at the azo group in strong acid; sulfonic acids beside azo groups show
+  apparent constants.
 """
 
 from __future__ import annotations
@@ -34,56 +36,100 @@ class HeldPair:
 HELD_PAIRS: dict[str, HeldPair] = {
     "phenolsulfonephthalein": HeldPair(2, 1.2, 0.4, False, "Perrin1972"),
     "phenolphthalein": HeldPair(2, 9.05, 0.3, True, "memory:Bishop1972"),
+    "2,7-bis(arylazo)chromotropic acid": HeldPair(1, 14.7, 0.8, True, "Serjeant1979"),
     "1,8-dihydroxynaphthalene": HeldPair(1, 15.0, 0.7, True, "memory:Bishop1972"),
 }
 """Cores with two equal groups whose steps are not independent."""
 
-HELD_OTHER: dict[str, tuple[float, float]] = {
-    "phenylazochromotropic acid": (13.8, 0.7),
+
+@dataclass(frozen=True, slots=True)
+class HeldOther:
+    """A second site inside a core that does not report.
+
+    `pka`, `sd` for the bare core; `follows` the share of the reporting site's shift by substituents that it
+    takes part in.
+    """
+
+    kind: str
+    pka: float
+    sd: float
+    follows: float
+    source: str
+
+
+HELD_OTHER: dict[str, HeldOther] = {
+    "phenylazochromotropic acid": HeldOther("phenol", 13.8, 0.7, 0.0, "Serjeant1979"),
+    "2-arylazo-H acid": HeldOther("aniline", 1.5, 1.0, 0.0, "convention"),
+    "8-hydroxyquinoline": HeldOther("pyridine", 5.0, 0.3, 0.8, "memory:Perrin1981"),
 }
-"""pKa and standard error of a hydroxyl inside the core that is bound by a hydrogen bond and does not
-report.
+"""The hydroxyl that a hydrogen bond holds, the amino group beside a hydrazone's carbonyl, the ring nitrogen
+(its share: 5-sulfo-, 5-nitro- and 5,7-dichloro-8-hydroxyquinoline, as remembered).
 """
 
-COUNTED_IN_PARENT = ("fluorescein", "phenylazochromotropic acid")
-"""Cores whose other groups are ionised at the transition; their charge is part of the measured parent."""
+COUNTED_IN_PARENT = (
+    "fluorescein",
+    "phenylazochromotropic acid",
+    "2,7-bis(arylazo)chromotropic acid",
+    "2-arylazo-H acid",
+    "2-arylazo-N-acetyl-H acid",
+    "8-hydroxyquinoline",
+)
+"""Cores whose other groups do not move the reporting site: they are ionised at the transition (or, as the
+quinoline nitrogen, neutral), and that is part of the measured parent."""
 
-DIHYDROXYAZO = "[OX2H1]-c:c-[NX2]=[NX2]-c:c-[OX2H1]"
-DIHYDROXYAZO_SHIFT = 1.6
-DIHYDROXYAZO_SD = 0.6
-"""o,o'-Dihydroxyazo dyes: both hydroxyls' pKa's fall by this much while the other holds its proton, and rise
-by as much above
-their own once it is gone. Sized on calcon-type dyes (Serjeant1979), rounded."""
 
+@dataclass(frozen=True, slots=True)
+class HydroxylBridge:
+    """Two hydroxyls (first and last atom of `pattern`) that share a proton once the first has left.
+
+    The first proton leaves `fall` below its site's own pKa, the second `rise` above it (pKa units). `cores`
+    restricts the rule to reporting cores of these names, empty for any.
+    """
+
+    pattern: str
+    cores: tuple[str, ...]
+    fall: float
+    rise: float
+    sd: float
+
+
+_DIHYDROXYAZO = "[OX2H1]-c:c-[NX2]=[NX2]-c:c-[OX2H1]"
+HYDROXYL_BRIDGES = (
+    HydroxylBridge(_DIHYDROXYAZO, ("2,7-bis(arylazo)chromotropic acid",), -0.6, 0.6, 1.0),
+    HydroxylBridge(_DIHYDROXYAZO, ("phenylazochromotropic acid",), 0.5, 1.3, 0.4),
+    HydroxylBridge(_DIHYDROXYAZO, (), 1.8, 1.8, 0.8),
+    HydroxylBridge("[OX2H1]-c:c-!@c:c-[OX2H1]", (), 1.8, 2.2, 0.7),
+    HydroxylBridge("[OX2H1]-c:c-[CH2]-c:c-[OX2H1]", (), 1.8, 1.5, 0.7),
+)
+"""First that fits counts. o,o'-Dihydroxyazo dyes: sized on 2-hydroxyphenylazo chromotropic acids and on
+calcon-type dyes (Serjeant1979), rounded; calmagite, calcon and 2,2'-dihydroxyazobenzene as remembered lie
+within the error. 2,2'-Dihydroxybiphenyl and -diphenylmethane: 7.6 for the first proton
+(memory:compilations)."""
+
+_NAPHTHALENE = "$(c1ccc2ccccc2c1),$(c1cccc2ccccc12)"
 PROTON_BRIDGES: tuple[tuple[str, float, float], ...] = (
     ("[NX3]([CX4;!$(CC[OX2,N])])([CX4;!$(CC[OX2,N])])c1ccccc1C(=O)[OX2H1]", 1.4, 0.5),
     ("[NX3]c1ccc(N=Nc2ccccc2C(=O)[OX2H1])cc1", 0.9, 0.4),
     ("[NX3]c1cccc2cccc(S(=O)(=O)[OX2H1])c12", 1.7, 0.4),
+    (f"[OX2H1]-[{_NAPHTHALENE};!$(c:c-N=N)]:c-S(=O)(=O)[OX2H1]", 0.8, 0.4),
 )
-"""Amine (first atom) whose proton the anion of an acid in the same match holds by a hydrogen bond: by how
-much the amine's pKa then lies above what the charge alone makes of it, and the standard error. Sized on
-N,N-dimethylanthranilic acid (Perrin1965), methyl red (memory:Bishop1972) and 1-naphthylamine-8-sulfonic
-acid (memory:compilations), rounded; one compound each. Hydroxyalkyl groups on nitrogen are left out:
-bis(hydroxyethyl)aminoterephthalic acids (Perrin1965) show no such rise."""
+"""Amine or naphthol (first atom) whose proton the anion of an acid in the same match holds by a hydrogen
+bond: by how much its pKa then lies above what the charge alone makes of it, and the standard error. Sized
+on N,N-dimethylanthranilic acid (Perrin1965), methyl red (memory:Bishop1972) and 1-naphthylamine-8-sulfonic
+acid (memory:compilations), rounded; one compound each; the last on 1-naphthol-2-sulfonic and
+2-naphthol-3,6-disulfonic acid (memory:compilations), where no azo group holds the proton already.
+Hydroxyalkyl groups on nitrogen are left out: bis(hydroxyethyl)aminoterephthalic acids (Perrin1965) show no
+such rise."""
 
-NOT_MODELLED: tuple[tuple[str, str], ...] = (
-    (
-        "Oc1c(N=Nc)ccc2ccc(N=Nc)c(O)c12",
-        "bis-azo dyes of 1,8-dihydroxynaphthalene have too many tautomers and hydrogen bonds for this model",
-    ),
-    (
-        "[OX2H1]c1c(N=Nc)ccc2cccc(N)c12",
-        "a nitrogen group beside the hydroxyl of an arylazo-naphthol (peri) binds its proton; not modelled",
-    ),
-    (
-        "[OX2H1]c1cccc2ccc(N=Nc)c(N)c12",
-        "a hydroxyl beside a nitrogen group that an azo group binds (peri); not modelled",
-    ),
-)
-"""Patterns of dyes that get no number, and why."""
-
-AZO_PROTONATION: dict[str, tuple[float, float]] = {"4-arylazophenol": (-1.3, 0.5)}
-"""pKa and standard error of the azo group of a bare hydroxyazo core, protonated in strong acid
-(Perrin1965).
+AZO_PROTONATION: dict[str, tuple[tuple[float, float], ...]] = {
+    "4-arylazophenol": ((-1.3, 0.5),),
+    "2,7-bis(arylazo)chromotropic acid": ((-2.8, 1.2), (-1.5, 1.2)),
+}
+"""pKa and standard error of the azo groups of a bare hydroxyazo core, protonated in strong acid
+(Perrin1965; Serjeant1979 for the bis-azo dyes, of which only apparent constants are known).
 """
 AZO_PROTONATION_RHO = 1.0
+
+APPARENT_SULFONIC: dict[str, tuple[float, float]] = {"2,7-bis(arylazo)chromotropic acid": (0.3, 1.2)}
+"""pKa and standard error of sulfonic acids where the printed constants are apparent ones: their protons are
+shared with the hydrazone nitrogens beside them (Serjeant1979, two dyes; hence the wide error)."""

@@ -6,7 +6,7 @@ any set of charged neighbours; every other site through its own rules.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Collection, Mapping
 from dataclasses import dataclass, field, replace
 from math import hypot, log10
 
@@ -14,17 +14,17 @@ from tuner.acidity.medium import medium_effect
 from tuner.brief.records import Medium
 from tuner.library.catalogue import Library
 from tuner.library.records import Series, Substituent
+from tuner.prediction.doubt import site_doubt
 from tuner.prediction.estimate import Estimator
 from tuner.prediction.held import (
+    APPARENT_SULFONIC,
     COUNTED_IN_PARENT,
-    DIHYDROXYAZO,
-    DIHYDROXYAZO_SD,
-    DIHYDROXYAZO_SHIFT,
     HELD_OTHER,
     HELD_PAIRS,
+    HYDROXYL_BRIDGES,
     PROTON_BRIDGES,
 )
-from tuner.prediction.ionisation import IonSite
+from tuner.prediction.ionisation import ALWAYS_IONISED, IonSite
 from tuner.prediction.records import SitePrediction, Term
 from tuner.prediction.ring_model import RingModel
 from tuner.prediction.side_sites import side_pka, side_site
@@ -38,8 +38,6 @@ REPORTING_KINDS = ("phenol", "aniline")
 AMINE_SERIES = ("anilinium", "n_alkyl_anilinium", "nn_dialkyl_anilinium")
 STATISTICAL_TWO = log10(2.0)
 SAME_CENTRE_BONDS = 2
-OPENED_SD = 0.5
-"""Further standard error (pKa units) of a ring that was opened into two groups."""
 
 Charges = Mapping[int, int]
 """Atom number -> formal charge that it carries when its site is ionised."""
@@ -62,6 +60,18 @@ def _opened(view: SiteView) -> frozenset[str]:
             if set(one.atoms) & set(other.atoms):
                 found |= {one.label, other.label}
     return frozenset(found)
+
+
+def _ends_without_charge(
+    view: SiteView, opened: Collection[str], acting: Charges, holder: Mapping[int, str]
+) -> dict[str, str]:
+    """Ends of an opened ring that share a charged atom with a nearer end: only that one carries the
+    charge."""
+    return {
+        g.label: g.smiles
+        for g in view.groups
+        if g.label in opened and not any(holder[a] == g.label for a in acting if a in g.atoms)
+    }
 
 
 def lies_flat(group: Substituent) -> Substituent:
@@ -113,7 +123,7 @@ class SiteMaker:
             else:
                 self._add_side_site(made, view, medium)
         self._held_together(made, kept)
-        self._bridged_by_azo(made, kept, found.smiles)
+        self._bridged_hydroxyls(made, kept, found.smiles)
         self._bridged_by_proton(made, kept, found.smiles)
         self._two_protons_on_one_centre(made, kept, found.smiles)
         return made
@@ -151,22 +161,26 @@ class SiteMaker:
         neutral = self.resolve({g.label: g.smiles for g in view.groups}, notes)
         opened = _opened(view)
         atoms = [v.reporting_atom for v in kept]
-        inside = {a for a, label in view.other_sites if label}
+        holder = {a: label for a, label in view.other_sites if label}
+        estimated = [g.label for g in view.groups if self._estimator.group(g.smiles)[1]]
+        doubt = site_doubt(view, found.smiles, opened, estimated)
 
         def evaluate(charged: frozenset[int]) -> Evaluated:
-            acting = {atoms[k]: charges[atoms[k]] for k in charged if atoms[k] in inside}
+            acting = {atoms[k]: charges[atoms[k]] for k in charged if atoms[k] in holder}
             if not acting:
                 groups = neutral
             else:
-                groups = self.resolve(charged_groups(found.smiles, view.groups, acting), [])
+                spelled = charged_groups(found.smiles, view.groups, acting)
+                spelled.update(_ends_without_charge(view, opened, acting, holder))
+                groups = self.resolve(spelled, [])
             flat = {label: lies_flat(g) if label in opened else g for label, g in groups.items()}
             pka, sd, terms = self._model.evaluate(prepared, flat)
-            return Evaluated(pka, hypot(sd, OPENED_SD) if opened else sd, terms)
+            return Evaluated(pka, hypot(sd, doubt), terms)
 
         known: dict[frozenset[int], Evaluated] = {}
 
         def cached(charged: frozenset[int]) -> Evaluated:
-            key = frozenset(k for k in charged if atoms[k] in inside)
+            key = frozenset(k for k in charged if atoms[k] in holder)
             if key not in known:
                 known[key] = evaluate(key)
             return known[key]
@@ -223,23 +237,38 @@ class SiteMaker:
                     self._pair(made, view.core, i, j)
                 elif view.core in COUNTED_IN_PARENT:
                     made.energies[i, j] = made.energies[j, i] = 0.0
-                    if view.core in HELD_OTHER and other.kind == view.kind:
-                        self._replace(made, j, *HELD_OTHER[view.core])
+                    self._inside_core(made, view, i, j)
 
-    def _bridged_by_azo(self, made: SiteTable, kept: list[SiteView], smiles: str) -> None:
-        """Two hydroxyls ortho to one azo group."""
+    def _inside_core(self, made: SiteTable, view: SiteView, i: int, j: int) -> None:
+        """Site j, which stands inside the core of the reporting site i."""
+        held = HELD_OTHER.get(view.core)
+        if held is not None and held.kind == made.ions[j].kind:
+            moved = made.shown[i].pka25 - self._library.cores[view.core].parent_pka.value
+            self._replace(
+                made, j, held.pka + held.follows * moved, hypot(held.sd, 0.3 * held.follows * moved)
+            )
+        if view.core in APPARENT_SULFONIC and made.ions[j].kind in ALWAYS_IONISED:
+            for k, site in enumerate(made.ions):
+                if site.kind in ALWAYS_IONISED:
+                    self._replace(made, k, *APPARENT_SULFONIC[view.core])
+
+    def _bridged_hydroxyls(self, made: SiteTable, kept: list[SiteView], smiles: str) -> None:
+        """Two hydroxyls that hold one proton between them once the first has left."""
         number = {view.reporting_atom: k for k, view in enumerate(kept) if view.kind == "phenol"}
-        pairs = {tuple(sorted((match[0], match[-1]))) for match in matches(smiles, DIHYDROXYAZO)}
         done: set[int] = set()
-        for a, b in sorted(pairs):
-            i, j = number.get(a, -1), number.get(b, -1)
-            if i < 0 or j < 0 or {i, j} & done:
-                continue
-            done |= {i, j}
-            for k in (i, j):
-                sd = hypot(made.ions[k].sd, DIHYDROXYAZO_SD)
-                self._replace(made, k, made.ions[k].pka - DIHYDROXYAZO_SHIFT, sd, -DIHYDROXYAZO_SHIFT)
-            made.energies[i, j] = made.energies[j, i] = 2 * DIHYDROXYAZO_SHIFT
+        for rule in HYDROXYL_BRIDGES:
+            for a, b in sorted({tuple(sorted((m[0], m[-1]))) for m in matches(smiles, rule.pattern)}):
+                i, j = number.get(a, -1), number.get(b, -1)
+                if i < 0 or j < 0 or {i, j} & done:
+                    continue
+                if rule.cores and not {kept[i].core, kept[j].core} & set(rule.cores):
+                    continue
+                done |= {i, j}
+                for k in (i, j):
+                    sd = hypot(made.ions[k].sd, rule.sd)
+                    self._replace(made, k, made.ions[k].pka - rule.fall, sd, -rule.fall)
+                if (i, j) not in made.energies:
+                    made.energies[i, j] = made.energies[j, i] = rule.fall + rule.rise
 
     def _bridged_by_proton(self, made: SiteTable, kept: list[SiteView], smiles: str) -> None:
         """An amine's proton held by the anion of an acid beside it."""
