@@ -115,3 +115,30 @@ def test_what_is_no_group_is_refused(estimator: Estimator) -> None:
 
 def test_spelling_does_not_matter(estimator: Estimator) -> None:
     assert estimator.group("[*:3]N=Nc1ccc(Br)cc1")[0] == estimator.group("*/N=N/c1ccc(Br)cc1")[0]
+
+
+@pytest.mark.parametrize(
+    "group",
+    ["*c1cc(=O)c2ccccc2o1", "*c1ccc(=O)[nH]c1", "*c1cc(=O)oc2ccccc12"],
+)
+def test_a_ring_that_is_aromatic_with_its_oxo_group_only_is_no_methyl(
+    estimator: Estimator, group: str
+) -> None:
+    """Chromone, pyridone, coumarin: once taken for saturated carbon, with an error to match."""
+    found, estimated = estimator.group(group)
+    assert estimated
+    assert found.sigma_meta.value > 0.0 > estimator.group("*C")[0].sigma_meta.value
+    assert found.sigma_para.sd > 0.3  # nothing like it stands in the table
+
+
+@pytest.mark.parametrize(
+    ("group", "pulls"),
+    [
+        ("*C=C1N=C(C)N(C)C1=O", True),
+        ("*C=C(C#N)c1ccccc1", True),
+        ("*C=CC=Cc1ccccc1", False),
+        ("*C=CCCC", False),
+    ],
+)
+def test_a_double_bond_pulls_by_what_stands_behind_it(estimator: Estimator, group: str, pulls: bool) -> None:
+    assert estimator.group(group)[0].para_acceptor is pulls

@@ -54,7 +54,8 @@ def table(
     Parameters
     ----------
     title, caption : text above and below
-    headings : (heading with its unit, "left" or "right")
+    headings : (heading with its unit, "left", "right", or "whole": left, and never folded, as for names that
+        a user types)
     rows : texts, as many per row as headings; taken literally
     """
     drawn = Table(
@@ -69,11 +70,9 @@ def table(
         padding=(0, 1, 0, 0),  # with the blank divider two columns of gap; three cost a word per row
     )
     for heading, side in headings:
-        right = side == "right"
+        right, kept = side == "right", side in ("right", "whole")
         # Folding loses nothing on a narrow screen, where an ellipsis would hide the end of a name.
-        drawn.add_column(
-            escape(heading), justify="right" if right else "left", no_wrap=right, overflow="fold"
-        )
+        drawn.add_column(escape(heading), justify="right" if right else "left", no_wrap=kept, overflow="fold")
     for row in rows:
         drawn.add_row(*(escape(text) for text in row))
     return drawn

@@ -163,7 +163,7 @@ def _one_series(library: Library, name: str) -> None:
 
 
 def _cores(library: Library) -> None:
-    headings = (("core", "left"), ("series", "left"), ("parent pKa", "right"), ("acid to base form", "left"))
+    headings = (("core", "whole"), ("series", "left"), ("parent pKa", "right"), ("acid to base form", "left"))
     rows = [
         (
             c.name,
@@ -174,7 +174,7 @@ def _cores(library: Library) -> None:
         for c in library.cores.values()
     ]
     caption = "parent: hydrogen at every open position; drawing and positions: tuner show cores NAME"
-    show(table(f"{len(rows)} cores", headings, rows, caption), piped=LONG_LINES)
+    show(table(f"{len(rows)} cores", headings, rows, caption))
 
 
 def _one_core(core: Core, library: Library, svg: Path | None) -> None:

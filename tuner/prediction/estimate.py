@@ -5,7 +5,8 @@ Rules, first that applies:
 1. A tabulated group is taken as it is.
 2. A saturated carbon: methyl plus the field effects of what it carries, attenuated (0.43 towards meta, 0.62
    towards para; a charge that is further away falls off more slowly than a dipole).
-3. An aromatic ring: the bare ring plus a share of the constants of what it carries.
+3. An aromatic ring: the bare ring plus a share of the constants of what it carries; a ring that is aromatic
+   only with what it carries (pyridone, chromone) is taken blindly, with a very wide error.
 4. Anything else: the nearest tabulated relative, found by simplifying the group's far end step by step (a
    chain to methyl, a substituted ring to the bare ring), plus a share of the difference between what was
    there and what was put instead.
@@ -29,6 +30,7 @@ from tuner.structure.anatomy import Anatomy, Branch, anatomy, rebuild
 from tuner.structure.groups import HYDROGEN_GROUP, canonical_group
 
 METHYL, PHENYL, BARE_HYDROGEN = "*C", "*c1ccccc1", HYDROGEN_GROUP
+DOUBLY_BOUND = "*="
 SOURCE = "estimate:analogs"
 
 CARBON_META, CARBON_PARA = 0.43, 0.62  # share of a field effect through one saturated carbon
@@ -39,6 +41,7 @@ RING_FAR = 0.20
 LINK = {"O": 0.60, "S": 0.50, "N": 0.50, "C": 0.40, "P": 0.40, "Si": 0.40, "B": 0.40, "Se": 0.50, "As": 0.40}
 DOUBLE_META, DOUBLE_PARA, DOUBLE_MINUS = 0.40, 0.40, 0.63  # through C=C, N=N, C=N
 PARA_METHYL, ORTHO_METHYL, ORTHO_OVER_PARA, ORTHO_CHAIN_SD = -0.17, -0.13, 1.5, 0.2
+PULL = 0.3  # sigma-para-minus above sigma-para by this much: between vinyl (0.2) and 2-acylvinyl (0.4)
 BASE_SD, RELATIVE_SD, BLIND_SD = 0.06, 0.35, 0.30
 MOST_STEPS = 12  # of simplification; chains longer than this do not change any more
 
@@ -158,7 +161,7 @@ class Estimator:
             field_effect=effect.field,
             resonance=effect.para - effect.field,
             bulk=made.bulk,
-            para_acceptor=bool(relative and relative.para_acceptor),
+            para_acceptor=bool(relative and relative.para_acceptor) or _pulls_through(built, effect),
             twistable=bool(relative and relative.twistable),
             hbond_acceptor=bool(relative and relative.hbond_acceptor),
             hbond_donor=bool(relative and relative.hbond_donor),
@@ -178,7 +181,7 @@ class Estimator:
         built = anatomy(text)
         if built.symbol == "H":
             return _Estimate(NO_EFFECT, text, 0)
-        if built.ring:
+        if built.ring or built.on_ring:
             return self._ring(built)
         if built.symbol == "C" and built.entry_charge == 0 and all(b.order == 1 for b in built.branches):
             return self._saturated(built)
@@ -209,6 +212,8 @@ class Estimator:
         else:
             base, relative = effect_of(bare), built.ring
         for relation, smiles in built.on_ring:
+            if smiles.startswith(DOUBLY_BOUND):  # part of what makes the ring aromatic: in the blind base
+                continue
             inner = self._estimate(smiles).effect
             if relation == "para":
                 base = base.plus(inner, RING_META, RING_PARA, RING_MINUS)
@@ -308,6 +313,14 @@ def _ortho_of_charged_chain(built: Anatomy, effect: Effect) -> Value:
     if not built.charge or built.symbol != "C" or built.ring or any(b.order > 1 for b in built.branches):
         return Value()
     return Value(ORTHO_METHYL + ORTHO_OVER_PARA * (effect.para - PARA_METHYL), ORTHO_CHAIN_SD)
+
+
+def _pulls_through(built: Anatomy, effect: Effect) -> bool:
+    """Whether a chain that begins with a carbon double bond has become an acceptor by what stands behind it,
+    although the relative it is built on (vinyl, say) is none: merocyanines.
+    """
+    doubly_bound = built.symbol == "C" and any(b.order == 2 for b in built.branches)
+    return doubly_bound and effect.minus - effect.para >= PULL
 
 
 def _short_name(text: str) -> str:
