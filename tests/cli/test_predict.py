@@ -13,7 +13,7 @@ import pytest
 import tuner.cli.predict as predict_command
 from tests.cli.conftest import Tuner
 from tuner.cli.predict import ADDED, Desk
-from tuner.errors import LibraryError
+from tuner.errors import LibraryError, StructureError
 from tuner.prediction.records import Prediction
 
 MOLECULES = """\
@@ -147,6 +147,21 @@ def test_a_defect_costs_one_row_and_not_the_table(
     notes = {row["name"]: row["note"] for row in read("out.csv")}
     assert "ZeroDivisionError" in notes["aniline"]
     assert notes["phenol"] == ""
+
+
+def test_a_structure_that_a_rule_cannot_treat_costs_one_row(
+    tuner: Tuner, table: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    def fails_on_aniline(smiles: str) -> Prediction:
+        if smiles.startswith("N"):
+            raise StructureError("such a ring is not treated")
+        return Prediction(smiles, pka=9.0, pka_sd=0.1)
+
+    monkeypatch.setattr(predict_command, "open_desk", desk_of(fails_on_aniline))
+    assert tuner("predict", str(table), "--out", "out.csv").code == 0
+    rows = {row["name"]: row for row in read("out.csv")}
+    assert (rows["aniline"]["pka"], rows["aniline"]["note"]) == ("", "such a ring is not treated")
+    assert rows["phenol"]["pka"] == "9.00"
 
 
 def test_a_fault_of_the_library_stops_the_table(

@@ -12,7 +12,7 @@ from rich.table import Table
 from tuner.brief.records import Medium
 from tuner.cli.console import note, progress, say, show, table
 from tuner.cli.molecules import Molecules, read_molecules, renamed, with_columns
-from tuner.errors import TunerError
+from tuner.errors import StructureError, TunerError
 from tuner.prediction.records import Prediction
 from tuner.report.digits import pka_text
 from tuner.report.wording import CAUTIONS, medium_in_words
@@ -164,6 +164,8 @@ def _safely(desk: Desk, smiles: str) -> tuple[Prediction, float, float]:
         answer = desk.predict(smiles)
         alpha = desk.alpha(smiles) if desk.alpha is not None and answer.found else nan
         return answer, alpha, desk.measured(answer)
+    except StructureError as fault:  # one molecule's fault stops no table
+        return _nothing(smiles, fault.text)
     except TunerError:  # not the molecule's fault: a table of the library is malformed
         raise
     except Exception as fault:
