@@ -23,3 +23,12 @@ def test_order_is_kept_even_where_a_crossing_would_be_nearer() -> None:
 
 def test_more_printed_than_predicted_leaves_one_over() -> None:
     assert match_steps([("pK1", 3.0), ("pK2", 9.0)], steps(9.2)) == [None, 0]
+
+
+def test_one_step_printed_twice_goes_to_one_predicted_step() -> None:
+    # a further determination of the same step must not claim the next one
+    assert match_steps([("pK3", 9.15), ("pK3(-OH)", 9.3)], steps(9.2, 14.5)) == [0, 0]
+
+
+def test_two_bracketed_names_without_a_number_are_two_steps() -> None:
+    assert match_steps([("pKAH(1-NH2)", 2.2), ("pKAH(2-NH2)", 4.0)], steps(2.0, 4.4)) == [0, 1]

@@ -1,11 +1,12 @@
 """Naphthols, naphthylamines, azo dyes and molecules with two ionising groups: are they right as a whole?
 
-Every constant is as remembered from the compilations of Serjeant & Dempsey (1979) and Perrin (1965, 1972) and
-from Bishop, Indicators (1972), not checked against print; the last column says how far the memory may be off.
-Rows were not chosen by how well they are predicted: known failures (1-hydroxyanthraquinone,
-3-nitro-2-naphthylamine) are among them, so the set is judged by its best 95 %, as tables of measured
-values are. One row, 1-naphthylamine-8-sulfonate, served to size a rule for hydrogen-bonded protons; no
-other did.
+Every constant is as remembered from the compilations of Serjeant & Dempsey (1979) and Perrin (1965, 1972)
+and from Bishop, Indicators (1972), not checked against print; the last column says how far the memory may
+be off. Rows were not chosen by how well they are predicted. Some served to set a rule or a parent:
+1-naphthylamine-8- sulfonate (protons held by an anion), 1-naphthol-2-sulfonate and
+2-naphthol-3,6-disulfonate (sulfonate beside a hydroxyl), the nitronaphthols and nitronaphthylamines (shares
+of ortho positions), 2-hydroxyazobenzene and both hydroxyanthraquinones (parents of cores). Dyes that served
+for nothing are in `test_dye_classes.py`.
 """
 
 from __future__ import annotations

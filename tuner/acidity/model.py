@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import replace
+from math import hypot
 from pathlib import Path
 
 from tuner.acidity.constants import SCAFFOLDS, AcidityConstants, load_constants
@@ -25,6 +26,18 @@ UNSTATED_PARENT_SD = 0.2
 
 Resolve = Callable[[str], Substituent]
 """Canonical `*...` SMILES to a group, tabulated or estimated."""
+
+
+def _trusted(parent: Value, scatter: float, model_sd: float) -> Value:
+    """A core's measured parent with the error by which it is weighed against the model.
+
+    Where analogs scatter around the model, the model is less sure of the bare core too; a smaller error of
+    the parent gives the weight (s^2 + scatter^2) / (s^2 + scatter^2 + sd^2) in the place of
+    s^2 / (s^2 + sd^2).
+    """
+    if not parent.known or not scatter:
+        return parent
+    return Value(parent.value, parent.sd * model_sd / hypot(model_sd, scatter))
 
 
 class AcidityModel:
@@ -97,5 +110,7 @@ class AcidityModel:
                 )
             return Base(parent, source), CoreShift(variance_taken=-(scatter**2)), {}
         fixed = {slot.label: self._resolve(slot.fixed) for slot in prepared.slots if slot.fixed}
-        shift = core_shift(self._constants[prepared.scaffold], prepared, fixed, parent, source)
+        constants = self._constants[prepared.scaffold]
+        trusted = _trusted(parent, scatter, evaluate_pattern(constants, prepared, fixed).sd)
+        shift = core_shift(constants, prepared, fixed, trusted, source)
         return Base(None), replace(shift, variance_taken=shift.variance_taken - scatter**2), fixed

@@ -22,19 +22,21 @@ OPENED_AT_NITROGEN_SD = 0.9
 -quinoxalines, julolidines, benzoquinuclidines)."""
 ESTIMATED_ON_NITROGEN_SD = 0.8
 """A group on the nitrogen that no table lists (glycosyl, indanyl, substituted benzyl, imidazolinylmethyl)."""
-ESTIMATED_SD = 0.15
+ESTIMATED_SD = 0.2
 """A group on the ring that no table lists."""
 SEVERAL_RINGS_ON_NITROGEN_SD = 0.4
 """Two aryl groups on the nitrogen, one with nitro groups: values far down on acidity functions
 that differ."""
 
 DOUBTED: tuple[tuple[str, str, float], ...] = (
-    ("phenol", "[OX2H1]c1ccc(cc1)[CH2]c1ccccc1[OX2H1]", 0.9),
-    ("phenol", "[OX2H1]c1ccc(cc1)[CH2]c1ccc([OX2H1])cc1", 0.9),
+    ("phenol", "[OX2H1]c1ccc(cc1)[CH2]c1ccccc1[OX2H1]", 1.2),
+    ("phenol", "[OX2H1]c1ccc(cc1)[CH2]c1ccc([OX2H1])cc1", 1.2),
+    ("aniline", "[NX3](-c)-[CX4]-[OX2]", 1.5),
     ("aniline", "[NX3](-c)(-c)-[CX4]", SEVERAL_RINGS_ON_NITROGEN_SD),
 )
 """Kind of site, pattern, further standard error (pKa units): dihydroxydiphenylmethanes, whose printed steps
-lie three pKa units apart without a reason that this model knows; diarylalkylamines. Only for sites that are
+lie three pKa units apart without a reason that this model knows; aminals and
+glycosylamines; diarylalkylamines. Only for sites that are
 seen as a bare phenol or aniline."""
 
 

@@ -60,6 +60,7 @@ class HeldOther:
 HELD_OTHER: dict[str, HeldOther] = {
     "phenylazochromotropic acid": HeldOther("phenol", 13.8, 0.7, 0.0, "Serjeant1979"),
     "2-arylazo-H acid": HeldOther("aniline", 1.5, 1.0, 0.0, "convention"),
+    "2,4-diaminoazobenzene": HeldOther("aniline", 0.5, 1.0, 0.0, "convention"),
     "8-hydroxyquinoline": HeldOther("pyridine", 5.0, 0.3, 0.8, "memory:Perrin1981"),
 }
 """The hydroxyl that a hydrogen bond holds, the amino group beside a hydrazone's carbonyl, the ring nitrogen
@@ -72,6 +73,7 @@ COUNTED_IN_PARENT = (
     "2,7-bis(arylazo)chromotropic acid",
     "2-arylazo-H acid",
     "2-arylazo-N-acetyl-H acid",
+    "2,4-diaminoazobenzene",
     "8-hydroxyquinoline",
 )
 """Cores whose other groups do not move the reporting site: they are ionised at the transition (or, as the
@@ -82,7 +84,8 @@ quinoline nitrogen, neutral), and that is part of the measured parent."""
 class HydroxylBridge:
     """Two hydroxyls (first and last atom of `pattern`) that share a proton once the first has left.
 
-    The first proton leaves `fall` below its site's own pKa, the second `rise` above it (pKa units). `cores`
+    The first proton leaves `fall` below its site's own pKa, the second `rise` above it (pKa units; what the
+    charge of the first does is in it). `cores`
     restricts the rule to reporting cores of these names, empty for any.
     """
 
@@ -93,20 +96,23 @@ class HydroxylBridge:
     sd: float
 
 
+_NAPHTHALENE = "$(c1ccc2ccccc2c1),$(c1cccc2ccccc12)"
 _DIHYDROXYAZO = "[OX2H1]-c:c-[NX2]=[NX2]-c:c-[OX2H1]"
+_BOTH_NAPHTHOL = f"[OX2H1]-[{_NAPHTHALENE}]:c-[NX2]=[NX2]-c:[{_NAPHTHALENE}]-[OX2H1]"
 HYDROXYL_BRIDGES = (
     HydroxylBridge(_DIHYDROXYAZO, ("2,7-bis(arylazo)chromotropic acid",), -0.6, 0.6, 1.0),
     HydroxylBridge(_DIHYDROXYAZO, ("phenylazochromotropic acid",), 0.5, 1.3, 0.4),
-    HydroxylBridge(_DIHYDROXYAZO, (), 1.8, 1.8, 0.8),
-    HydroxylBridge("[OX2H1]-c:c-!@c:c-[OX2H1]", (), 1.8, 2.2, 0.7),
+    HydroxylBridge(_BOTH_NAPHTHOL, (), 3.0, 2.2, 0.8),
+    HydroxylBridge(_DIHYDROXYAZO, (), 0.6, 1.9, 0.7),
+    HydroxylBridge("[OX2H1]-c1c(-[NX2]=[NX2]-c)ccc(c1)-[OX2H1]", (), 0.4, 3.0, 0.6),
+    HydroxylBridge("[OX2H1]-c:c-!@c:c-[OX2H1]", (), 1.8, 3.2, 0.8),
     HydroxylBridge("[OX2H1]-c:c-[CH2]-c:c-[OX2H1]", (), 1.8, 1.5, 0.7),
 )
-"""First that fits counts. o,o'-Dihydroxyazo dyes: sized on 2-hydroxyphenylazo chromotropic acids and on
-calcon-type dyes (Serjeant1979), rounded; calmagite, calcon and 2,2'-dihydroxyazobenzene as remembered lie
-within the error. 2,2'-Dihydroxybiphenyl and -diphenylmethane: 7.6 for the first proton
-(memory:compilations)."""
+"""First that fits counts. o,o'-Dihydroxyazo dyes: sized on 2-hydroxyphenylazo chromotropic acids and two
+naphthylazonaphthols (Serjeant1979), on calcon and calmagite (memory:Bishop1972), rounded;
+4-arylazoresorcinols on tropaeolin O (memory:Bishop1972); 2,2'-dihydroxybiphenyl and -diphenylmethane: 7.6
+for the first proton (memory:compilations)."""
 
-_NAPHTHALENE = "$(c1ccc2ccccc2c1),$(c1cccc2ccccc12)"
 PROTON_BRIDGES: tuple[tuple[str, float, float], ...] = (
     ("[NX3]([CX4;!$(CC[OX2,N])])([CX4;!$(CC[OX2,N])])c1ccccc1C(=O)[OX2H1]", 1.4, 0.5),
     ("[NX3]c1ccc(N=Nc2ccccc2C(=O)[OX2H1])cc1", 0.9, 0.4),

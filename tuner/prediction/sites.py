@@ -243,7 +243,8 @@ class SiteMaker:
         """Site j, which stands inside the core of the reporting site i."""
         held = HELD_OTHER.get(view.core)
         if held is not None and held.kind == made.ions[j].kind:
-            moved = made.shown[i].pka25 - self._library.cores[view.core].parent_pka.value
+            acids = frozenset(k for k, site in enumerate(made.ions) if site.kind in ALWAYS_IONISED)
+            moved = made.evaluate[i](acids).pka - self._library.cores[view.core].parent_pka.value
             self._replace(
                 made, j, held.pka + held.follows * moved, hypot(held.sd, 0.3 * held.follows * moved)
             )
