@@ -40,6 +40,15 @@ def test_a_brief_is_told_back_with_its_space(tuner: Tuner, brief: Path) -> None:
     assert sorted(path.name for path in Path().iterdir()) == ["small.toml"]
 
 
+def test_a_stretched_medium_is_told_before_the_search(tuner: Tuner, brief: Path) -> None:
+    medium = "\n[medium]\ntemperature_c = 75\nionic_strength_m = 1.2\n"
+    brief.write_text(BRIEF + medium, encoding="utf-8")
+    notes = tuner("check", str(brief)).err.splitlines()
+    assert any("75 degC is outside 0-60 degC" in line for line in notes)
+    assert any("beyond 0.5" in line for line in notes)
+    assert len(notes) == 2
+
+
 def test_a_space_without_routes_is_counted_each_molecule_once(tuner: Tuner, brief: Path) -> None:
     # 3 choices at each of 2, 3, 5, 6: 81 patterns, 9 of them their own mirror image: (81 + 9) / 2
     seen = tuner("check", str(brief))

@@ -5,7 +5,7 @@ from __future__ import annotations
 from rich.table import Table
 
 from tuner.brief import Brief, find_brief, read_brief
-from tuner.cli.console import say, show, table
+from tuner.cli.console import note, say, show, table
 from tuner.report.digits import choices_in_words, count
 from tuner.report.wording import anchor_in_words, medium_in_words, target_in_words
 from tuner.search.result import SpaceSummary
@@ -13,6 +13,7 @@ from tuner.search.result import SpaceSummary
 
 def run(name: str) -> None:
     """Read, build the space, count, print."""
+    from tuner.acidity.medium import medium_notes
     from tuner.cli.faults import placed_in
     from tuner.search.extent import survey
 
@@ -24,6 +25,8 @@ def run(name: str) -> None:
     show(space_table(spaces))
     total = sum(space.analogs for space in spaces)
     say(f"{count(total)} analogs; the brief is sound")
+    media = [target.medium for target in (brief.target, *brief.also)]
+    note(dict.fromkeys(line for medium in media for line in medium_notes(medium)))
 
 
 def brief_lines(brief: Brief) -> list[str]:
