@@ -120,7 +120,9 @@ def _worst_table(scaffold: str, found: list[LeftOut], made: Fit) -> Table:
 def _why(found: LeftOut, weight: float) -> str:
     """What the fit itself says about a miss."""
     if weight < DOUBTED:
-        return "the value disagrees with what related compounds say: an effect of its own, or a doubtful value"
+        return (
+            "the value disagrees with what related compounds say: an effect of its own, or a doubtful value"
+        )
     if found.sd >= UNCERTAIN:
         return "foretold: its groups or their coupling are little known"
     return "not foretold"
