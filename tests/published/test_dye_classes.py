@@ -111,6 +111,18 @@ RULED: tuple[Row, ...] = (
     ("tropaeolin O", "O=S(=O)(O)c1ccc(N=Nc2ccc(O)cc2O)cc1", (6.7, 11.9), 0.4),
     ("chrysoidine", "Nc1ccc(N=Nc2ccccc2)c(N)c1", (5.3,), 0.2),
     ("tropaeolin OO", "O=S(=O)(O)c1ccc(N=Nc2ccc(Nc3ccccc3)cc2)cc1", (2.0,), 0.5),
+    # heteroaryl azo dyes (memory:hetarylazo)
+    ("PAR", "Oc1ccc(N=Nc2ccccn2)c(O)c1", (3.0, 5.6, 11.9), 0.2),
+    ("TAR", "Oc1ccc(N=Nc2nccs2)c(O)c1", (1.0, 6.2, 9.4), 0.3),
+    ("PAN", "Oc1ccc2ccccc2c1N=Nc1ccccn1", (2.4, 11.8), 0.5),
+    # naphthylamine azo dyes take their proton at the azo nitrogen (memory:Bishop1972)
+    ("naphthyl red", "Nc1ccc(N=Nc2ccccc2)c2ccccc12", (4.2,), 0.3),
+    (
+        "Congo red",
+        "Nc1c(N=Nc2ccc(-c3ccc(N=Nc4cc(S(=O)(=O)O)c5ccccc5c4N)cc3)cc2)cc(S(=O)(=O)O)c2ccccc12",
+        (4.1,),
+        0.5,
+    ),
     ("8-hydroxyquinoline", "Oc1cccc2cccnc12", (5.0, 9.81), 0.1),
     ("5,7-dichloro-8-hydroxyquinoline", "Oc1c(Cl)cc(Cl)c2cccnc12", (2.9, 7.4), 0.2),
     ("indophenol", "O=C1C=CC(=Nc2ccc(O)cc2)C=C1", (8.1,), 0.1),

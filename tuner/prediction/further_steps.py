@@ -91,5 +91,5 @@ def _far_ring(smiles: str, estimator: Estimator) -> tuple[float, float]:
             fall -= ANION_BESIDE_NH
             continue
         effect = effect_of(estimator.group(acting)[0])
-        fall += NH_RHO * (effect.minus if relation == "para" else effect.meta)
+        fall += NH_RHO * (effect.meta if relation == "meta" else effect.minus)
     return fall, 0.3 * abs(fall)

@@ -57,14 +57,25 @@ class HeldOther:
     source: str
 
 
-HELD_OTHER: dict[str, HeldOther] = {
-    "phenylazochromotropic acid": HeldOther("phenol", 13.8, 0.7, 0.0, "Serjeant1979"),
-    "2-arylazo-H acid": HeldOther("aniline", 1.5, 1.0, 0.0, "convention"),
-    "2,4-diaminoazobenzene": HeldOther("aniline", 0.5, 1.0, 0.0, "convention"),
-    "8-hydroxyquinoline": HeldOther("pyridine", 5.0, 0.3, 0.8, "memory:Perrin1981"),
+HELD_OTHER: dict[str, tuple[HeldOther, ...]] = {
+    "phenylazochromotropic acid": (HeldOther("phenol", 13.8, 0.7, 0.0, "Serjeant1979"),),
+    "2-arylazo-H acid": (HeldOther("aniline", 1.5, 1.0, 0.0, "convention"),),
+    "2,4-diaminoazobenzene": (HeldOther("aniline", 0.5, 1.0, 0.0, "convention"),),
+    "8-hydroxyquinoline": (HeldOther("pyridine", 5.0, 0.3, 0.8, "memory:Perrin1981"),),
+    "4-(2-pyridylazo)resorcinol": (
+        HeldOther("phenol", 11.9, 0.3, 0.5, "memory:hetarylazo"),
+        HeldOther("pyridine", 3.0, 0.4, 0.3, "memory:hetarylazo"),
+    ),
+    "4-(2-thiazolylazo)resorcinol": (
+        HeldOther("phenol", 9.4, 0.4, 0.5, "memory:hetarylazo"),
+        HeldOther("azole", 1.0, 0.6, 0.3, "memory:hetarylazo"),
+    ),
+    "1-(2-pyridylazo)-2-naphthol": (HeldOther("pyridine", 2.4, 0.6, 0.2, "memory:hetarylazo"),),
+    "1-(2-thiazolylazo)-2-naphthol": (HeldOther("azole", 2.2, 0.6, 0.2, "memory:hetarylazo"),),
 }
-"""The hydroxyl that a hydrogen bond holds, the amino group beside a hydrazone's carbonyl, the ring nitrogen
-(its share: 5-sulfo-, 5-nitro- and 5,7-dichloro-8-hydroxyquinoline, as remembered).
+"""The hydroxyl that a hydrogen bond holds, the amino group beside a hydrazone's carbonyl, ring nitrogens (the
+share of 8-hydroxyquinoline: its 5-sulfo-, 5-nitro- and 5,7-dichloro derivative, as remembered; the others are
+guesses).
 """
 
 COUNTED_IN_PARENT = (
@@ -75,6 +86,10 @@ COUNTED_IN_PARENT = (
     "2-arylazo-N-acetyl-H acid",
     "2,4-diaminoazobenzene",
     "8-hydroxyquinoline",
+    "4-(2-pyridylazo)resorcinol",
+    "4-(2-thiazolylazo)resorcinol",
+    "1-(2-pyridylazo)-2-naphthol",
+    "1-(2-thiazolylazo)-2-naphthol",
 )
 """Cores whose other groups do not move the reporting site: they are ionised at the transition (or, as the
 quinoline nitrogen, neutral), and that is part of the measured parent."""

@@ -241,8 +241,9 @@ class SiteMaker:
 
     def _inside_core(self, made: SiteTable, view: SiteView, i: int, j: int) -> None:
         """Site j, which stands inside the core of the reporting site i."""
-        held = HELD_OTHER.get(view.core)
-        if held is not None and held.kind == made.ions[j].kind:
+        others = HELD_OTHER.get(view.core, ())
+        held = next((other for other in others if other.kind == made.ions[j].kind), None)
+        if held is not None:
             acids = frozenset(k for k, site in enumerate(made.ions) if site.kind in ALWAYS_IONISED)
             moved = made.evaluate[i](acids).pka - self._library.cores[view.core].parent_pka.value
             self._replace(
