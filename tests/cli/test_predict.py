@@ -186,9 +186,9 @@ def test_a_missing_column_is_named(tuner: Tuner) -> None:
 def test_an_explanation_adds_up(tuner: Tuner) -> None:
     seen = tuner("explain", "Oc1c(Cl)cc(C#N)cc1OC")
     assert seen.code == 0, seen.err
-    rows = seen.out.split("remark")[1].split("sum:")[0]
+    rows = seen.out.split(" from\n")[1].split("sum:")[0]
     terms = [
-        float(v.replace("−", "-")) for v in re.findall(r"([+−]?\d+\.\d\d)\s+\d\.\d\d\s*(?:\n|[a-z])", rows)
+        float(v.replace("−", "-")) for v in re.findall(r"([+−]?\d+\.\d\d)\s+\d\.\d\d(?:  [\d, ]+)?\n", rows)
     ]
     total = float(re.search(r"sum: .*?(\d+\.\d\d)", seen.out).group(1))  # type: ignore[union-attr]
     # 0.005 per term: each is rounded to two decimals
@@ -244,11 +244,11 @@ def test_a_structure_instead_of_a_file_is_sent_to_the_right_command(tuner: Tuner
 def test_an_explanation_adds_up_in_the_medium_too(tuner: Tuner) -> None:
     seen = tuner("explain", "CN(C)c1ccc(N=Nc2ccc(C(=O)O)cc2)cc1", "--temperature-c", "37", "--offset", "0.3")
     assert seen.code == 0, seen.err
-    table, results = seen.out.split("remark")[1].split("sum: pKa' in the medium")
+    table, results = seen.out.split(" from\n")[1].split("sum: pKa' in the medium")
     numbers = [
         float(hit.group(1).replace("−", "-"))
         for line in table.split("sum: pKa at 25")[1].splitlines()
-        if (hit := re.search(r"\s([+−]?\d+\.\d\d)(?:\s+\d\.\d\d)?\s*$", line))
+        if (hit := re.search(r"\s([+−]?\d+\.\d\d)(?:\s+\d\.\d\d)?(?:\s+\d[\d, ]*)?$", line))
     ]
     total = re.match(r"\s+(\d+\.\d\d)", results)
     assert total is not None
@@ -262,3 +262,15 @@ def test_an_explanation_tells_sites_and_base_form(tuner: Tuner) -> None:
     assert re.search(r"each site alone +phenol \d\.\d\d, benzoic acid 4\.\d\d", out)
     assert re.search(r"base form +10 % at pH 8\.\d\d, 50 % at 9\.\d\d, 90 % at 10\.\d\d", out)
     assert "% at pH 9.3" in out
+
+
+def test_every_summand_cites_its_source(tuner: Tuner) -> None:
+    out = tuner("explain", "Oc1c(Cl)cc(C#N)cc1OC", "--temperature-c", "37").out
+    table, rest = out.split(" from\n")[1].split("conditional pKa'")
+    rows = [line for line in table.splitlines() if re.search(r"\d\.\d\d", line) and "sum:" not in line]
+    listed = set(re.findall(r"^  from +(\d+)  \S", rest, re.MULTILINE))
+    assert len(rows) >= 5
+    for row in rows:
+        numbers = re.search(r"  (\d+(?:, \d+)*)$", row)
+        assert numbers is not None, row
+        assert set(numbers.group(1).split(", ")) <= listed

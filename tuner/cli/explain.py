@@ -41,23 +41,29 @@ def run(
     for subject, text in _results(answer, medium, desk, at_ph):
         say(f"  {subject:<18}{text}")
     say(f"  {CAUTIONS[0]}")
-    for line in _sources(answer, load_library(overlay)):
+    for line in _sources(_cited(answer), load_library(overlay)):
         say(line)
     note(answer.notes)
 
 
-def _sources(answer: Prediction, library: Library) -> list[str]:
-    """Where the constants of the sum come from, each once, in full."""
-    keys = dict.fromkeys(
-        key for term in (*answer.terms, *answer.medium_terms) for key, _ in split_citation(term.source)
-    )
-    texts = [library.sources[key].text if key in library.sources else key for key in keys]
-    head, rest = "  from  ", " " * 8
-    return [fill(text, WIDEST, initial_indent=head, subsequent_indent=rest) for text in texts]
+def _cited(answer: Prediction) -> dict[str, int]:
+    """Every source of the sum in order of first appearance, with the number by which rows cite it."""
+    terms = (*answer.terms, *sites_terms(answer), *medium_rest(answer))
+    keys = dict.fromkeys(key for term in terms for key, _ in split_citation(term.source))
+    return {key: n for n, key in enumerate(keys, start=1)}
+
+
+def _sources(cited: dict[str, int], library: Library) -> list[str]:
+    """Where the constants of the sum come from, each once, in full, with its number."""
+    lines = []
+    for key, n in cited.items():
+        text = library.sources[key].text if key in library.sources else key
+        lines.append(fill(text, WIDEST, initial_indent=f"  from {n:>2}  ", subsequent_indent=" " * 11))
+    return lines
 
 
 def _sum_table(answer: Prediction) -> Table:
-    """Parent first, then each group at its position, pairs, and the sum."""
+    """Parent first, then each group at its position, pairs, and the sum; then the medium and its sum."""
     headings = (
         ("at", "left"),
         ("what", "left"),
@@ -65,21 +71,22 @@ def _sum_table(answer: Prediction) -> Table:
         ("rho", "right"),
         ("pKa units", "right"),
         ("sd", "right"),
-        ("remark", "left"),
+        ("from", "left"),
     )
-    rows = [_term_row(n, term) for n, term in enumerate(answer.terms)]
-    rows += [_term_row(1, term) for term in sites_terms(answer)]
+    cited = _cited(answer)
+    rows = [_term_row(n, term, cited) for n, term in enumerate((*answer.terms, *sites_terms(answer)))]
     rows.append(("", "sum: pKa at 25 °C, no salt", "", "", f"{answer.pka25:.2f}", "", ""))
     moved = medium_rest(answer)
-    rows += [_term_row(1, term) for term in moved]
+    rows += [_term_row(1, term, cited) for term in moved]
     if moved:
         rows.append(("", "sum: pKa' in the medium", "", "", f"{answer.pka:.2f}", "", ""))
     return table("pKa of the reporting group as a sum", headings, rows)
 
 
-def _term_row(n: int, term: Term) -> tuple[str, ...]:
-    """One term; the first is the parent and has no sign."""
+def _term_row(n: int, term: Term, cited: dict[str, int]) -> tuple[str, ...]:
+    """One term; the first is the parent and has no sign. Its sources are cited by their numbers."""
     value = f"{term.value:.2f}" if n == 0 else signed(term.value)
+    numbers = dict.fromkeys(cited[key] for key, _ in split_citation(term.source))
     return (
         term.label,
         term.what,
@@ -87,7 +94,7 @@ def _term_row(n: int, term: Term) -> tuple[str, ...]:
         f"{term.rho:.2f}" if isfinite(term.rho) else "",
         value,
         f"{term.sd:.2f}" if isfinite(term.sd) else "",
-        term.note,
+        ", ".join(str(number) for number in numbers),
     )
 
 
