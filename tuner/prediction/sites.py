@@ -258,10 +258,10 @@ class SiteMaker:
         """Two hydroxyls that hold one proton between them once the first has left."""
         number = {view.reporting_atom: k for k, view in enumerate(kept) if view.kind == "phenol"}
         done: set[int] = set()
-        for rule in HYDROXYL_BRIDGES:
+        for rule in HYDROXYL_BRIDGES if len(number) > 1 else ():
             for a, b in sorted({tuple(sorted((m[0], m[-1]))) for m in matches(smiles, rule.pattern)}):
                 i, j = number.get(a, -1), number.get(b, -1)
-                if i < 0 or j < 0 or {i, j} & done:
+                if i < 0 or j < 0 or {i, j} & done or (i, j) in made.energies:
                     continue
                 if rule.cores and not {kept[i].core, kept[j].core} & set(rule.cores):
                     continue
@@ -269,11 +269,12 @@ class SiteMaker:
                 for k in (i, j):
                     sd = hypot(made.ions[k].sd, rule.sd)
                     self._replace(made, k, made.ions[k].pka - rule.fall, sd, -rule.fall)
-                if (i, j) not in made.energies:
-                    made.energies[i, j] = made.energies[j, i] = rule.fall + rule.rise
+                made.energies[i, j] = made.energies[j, i] = rule.fall + rule.rise
 
     def _bridged_by_proton(self, made: SiteTable, kept: list[SiteView], smiles: str) -> None:
-        """An amine's proton held by the anion of an acid beside it."""
+        """A proton held by the anion of an acid beside it."""
+        if all(ion.own is not None for ion in made.ions):  # no acids: spare the search
+            return
         number = {view.reporting_atom: k for k, view in enumerate(kept)}
         for pattern, rise, rise_sd in PROTON_BRIDGES:
             for match in sorted(matches(smiles, pattern)):
