@@ -1,5 +1,4 @@
-"""Cores whose other groups are counted in the parent: both doors agree, though such a molecule has several sites.
-"""
+"""Cores whose other groups are counted in the parent: both doors agree, several sites or not."""
 
 from __future__ import annotations
 
