@@ -137,6 +137,7 @@ RULED: tuple[Row, ...] = (
         (10.28,),
         0.1,
     ),
+    ("6-methyl-1,2,3,4-tetrahydroquinoxaline", "Cc1ccc2c(c1)NCCN2", (2.03, 4.97), 0.1),
     # a carbonyl group beside the hydroxyl, held near or turned away by its ring (Serjeant1979)
     ("8-hydroxy-5-nitro-1-tetralone", "O=C1CCCc2c([N+](=O)[O-])ccc(O)c21", (8.5,), 0.1),
     ("7-hydroxy-4-nitro-1-indanone", "O=C1CCc2c([N+](=O)[O-])ccc(O)c21", (5.27,), 0.1),

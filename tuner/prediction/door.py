@@ -184,7 +184,8 @@ class MoleculeDoor:
         steps = [float(p) for p in states.macroscopic_pkas()]
         if answer.core in HELD_PAIRS and (0, 1) in ionisation.pair_energies:
             wanted = ionisation.sites[0].pka
-            if HELD_PAIRS[answer.core].parent_step == 2:
+            beside_charged = 2 if ionisation.sites[0].charge_if_ionised < 0 else 1
+            if HELD_PAIRS[answer.core].parent_step == beside_charged:
                 wanted += ionisation.pair_energies[0, 1]
             return min(steps, key=lambda p: abs(p - wanted)), ""
         part = [float(states.site_losses(k)[place]) for k in range(len(steps))]

@@ -32,7 +32,7 @@ DOUBTED: tuple[tuple[str, str, float], ...] = (
     ("phenol", "[OX2H1]c1ccc(cc1)[CH2]c1ccccc1[OX2H1]", 1.2),
     ("phenol", "[OX2H1]c1ccc(cc1)[CH2]c1ccc([OX2H1])cc1", 1.2),
     ("phenol", "[OX2H1]-c:c-N=N-[a;!c,$(c:[!c])]", 1.5),
-    ("aniline", "[NX3](-c)-[CX4]-[OX2]", 1.5),
+    ("aniline", "[NX3](-c)-[CX4]-[OX2]", 1.2),
     ("aniline", "[NX3](-c)(-c)-[CX4]", SEVERAL_RINGS_ON_NITROGEN_SD),
 )
 """Kind of site, pattern, further standard error (pKa units): dihydroxydiphenylmethanes, whose printed steps

@@ -32,6 +32,8 @@ ANION_BESIDE_NH = 1.8
 ANION_BESIDE_NH_SAME_RING = 0.6
 """Rise by a carboxylate or sulfonate ortho on the other ring, which holds the proton; on the nitrated ring a
 nitro group already does. Sized on picrylanthranilic and picrylorthanilic acid (Serjeant1979)."""
+ANION_FAR = 0.1
+"""Rise by an anion elsewhere on the other ring (dinitrophenyl- and picrylmetanilic acid, Serjeant1979)."""
 ACID_FORMS = {"*C(=O)O": "*C(=O)[O-]", "*S(=O)(=O)O": "*S(=O)(=O)[O-]"}
 
 
@@ -89,6 +91,9 @@ def _far_ring(smiles: str, estimator: Estimator) -> tuple[float, float]:
         acting = ACID_FORMS.get(group, group)
         if acting != group and relation == "ortho":
             fall -= ANION_BESIDE_NH
+            continue
+        if acting != group:
+            fall -= ANION_FAR
             continue
         effect = effect_of(estimator.group(acting)[0])
         fall += NH_RHO * (effect.meta if relation == "meta" else effect.minus)

@@ -21,9 +21,9 @@ from dataclasses import dataclass
 class HeldPair:
     """Two equal reporting groups of one core.
 
-    `parent_step` is the step whose constant is the core's parent pKa (1 or 2); `other_pka` that of the
-    other step, for the bare core, with its standard error; `follows` whether the other step moves with the
-    substituents as the first does.
+    `parent_step` is the step whose constant is the core's parent pKa (1 or 2, in ascending order);
+    `other_pka` that of the other step, for the bare core, with its standard error; `follows` whether the
+    other step moves with the substituents as the first does.
     """
 
     parent_step: int
@@ -37,6 +37,7 @@ HELD_PAIRS: dict[str, HeldPair] = {
     "phenolsulfonephthalein": HeldPair(2, 1.2, 0.4, False, "Perrin1972"),
     "phenolphthalein": HeldPair(2, 9.05, 0.3, True, "memory:Bishop1972"),
     "2,7-bis(arylazo)chromotropic acid": HeldPair(1, 14.7, 0.8, True, "Serjeant1979"),
+    "1,2,3,4-tetrahydroquinoxaline": HeldPair(2, 2.11, 0.2, True, "Perrin1965"),
     "1,8-dihydroxynaphthalene": HeldPair(1, 15.0, 0.7, True, "memory:Bishop1972"),
 }
 """Cores with two equal groups whose steps are not independent."""

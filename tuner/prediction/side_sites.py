@@ -29,6 +29,10 @@ COLUMNS = (
 
 CHAIN_ATTENUATION = 0.4  # per saturated carbon
 FAR_SHARE = 0.5
+ARYL_ON_NITROGEN = 0.12
+"""Field effect that an aryl group adds to an amino group on a chain; its lone pair is drawn into the ring.
+Sized on dialkylaminoalkylphenothiazines (Perrin1965, 1972): half a unit with three carbons between, one
+with two."""
 RING_LABELS = {"2": "ortho", "6": "ortho", "3": "meta", "5": "meta", "4": "para"}
 
 ORTHO_FIELD = 2.4  # benzoic acids: fall per unit of field effect of an ortho group, on top of rho * 0
@@ -45,13 +49,6 @@ BOTH_ORTHO_HYDROXYL = 0.65  # further fall where two hydroxyls bind the carboxyl
 ORTHO_AMINO = 0.75  # rise for an ortho amino group, in place of the donor term
 """Set on 2-chloro-, 2-methyl-, 2-nitro-, 2-hydroxy- and 2-methoxybenzoic acid as remembered; common
 practice, no source.
-"""
-
-
-SULFONAMIDES = ("sulfonamide", "benzenesulfonamide")
-SULFONANILIDE_FALL, SULFONANILIDE_SD = 1.6, 0.5
-"""An aryl group on a sulfonamide's nitrogen (benzenesulfonanilide against benzenesulfonamide), as
-remembered.
 """
 
 
@@ -123,7 +120,15 @@ def _saturated_carbon(built: Anatomy) -> bool:
 def _damped_field(smiles: str, estimator: Estimator) -> float:
     """Field effect of a ring, vinyl group and the like; what these carry counts by half."""
     near = estimator.relative_field(smiles)
-    return near + FAR_SHARE * (estimator.field(smiles) - near)
+    return near + FAR_SHARE * (estimator.field(smiles) - near) + _aryl_on_nitrogen(smiles)
+
+
+def _aryl_on_nitrogen(smiles: str) -> float:
+    """What aryl groups on an amine nitrogen add to its pull along a chain."""
+    built = anatomy(smiles)
+    if built.symbol != "N" or built.entry_charge or any(b.order > 1 for b in built.branches):
+        return 0.0
+    return ARYL_ON_NITROGEN * sum(bool(anatomy(b.smiles).ring) for b in built.branches)
 
 
 def _pull(smiles: str, estimator: Estimator) -> float:

@@ -309,7 +309,10 @@ class SiteMaker:
         model, bare = made.shown[i].pka25, self._library.cores[core].parent_pka.value
         other = held.other_pka + (model - bare if held.follows else 0.0)
         first, second = (model, other) if held.parent_step == 1 else (other, model)
-        beside_neutral, beside_charged = first + STATISTICAL_TWO, second - STATISTICAL_TWO
+        if made.ions[i].charge_if_ionised < 0:
+            beside_neutral, beside_charged = first + STATISTICAL_TWO, second - STATISTICAL_TWO
+        else:  # amines: the higher step is the one beside a partner without proton
+            beside_neutral, beside_charged = second - STATISTICAL_TWO, first + STATISTICAL_TWO
         made.energies[i, j] = beside_charged - beside_neutral
         shift = beside_neutral - model
         self._replace(made, i, beside_neutral, made.shown[i].sd, shift)
