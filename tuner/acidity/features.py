@@ -13,7 +13,7 @@ from __future__ import annotations
 import re
 from collections.abc import Mapping
 from dataclasses import dataclass
-from math import nan, sqrt
+from math import hypot, nan, sqrt
 
 from tuner.acidity.couplings import AMINE_ALKYL, AMINE_FREE
 from tuner.acidity.nature import (
@@ -74,6 +74,9 @@ BRANCHED = re.compile(r"\*CC\(")
 """Isobutyl and the like: the branch stands one carbon off, over the nitrogen's lone pair."""
 SATURATED = re.compile(r"\*[C()0-9]+")
 SAME_CONSTANT = 1e-6
+DONOR_DOUBT = 0.10
+"""Further error of sigma_para per unit of donation by resonance: a donor opposite an oxygen or a nitrogen,
+itself a donor, gives less than it gives to benzoic acid (amino and dimethylamino by half)."""
 CHARGE_SIGMA = 0.33
 """Part of sigma that is the charge itself, per unit charge."""
 UNUSUAL_ORTHO_SD = 1.5
@@ -115,7 +118,9 @@ class GroupScales:
         if column == "meta":
             return self.rho * self.error_meta * group.sigma_meta.sd
         if column == "para":
-            return self.rho * self.error_para * para_value(group)[0].sd
+            value, acted = para_value(group)
+            donor = DONOR_DOUBT * max(-resonance(group), 0.0) if acted == "para" else 0.0
+            return self.rho * self.error_para * hypot(value.sd, donor)
         if column == "nitrogen":
             return self.nitrogen_sd
         if group.charge or "=N" in group.smiles:

@@ -48,6 +48,8 @@ SENSITIVITY = {"phenol": 2.23, "aniline": 2.88}
 
 MEASURED, STEP, REMEMBERED = "measured", "step", "remembered"
 MOST_DETERMINATIONS = 4
+DISAGREEMENT = 0.5
+"""pKa units; two determinations further apart than this cannot both be right."""
 CONTRADICTION = 3.0
 """Stated doubts by which a remembered value must differ from a measured one to be kept beside it."""
 
@@ -92,8 +94,10 @@ def measured_row(
     celsius: float,
     n: int,
     scaffold: str = "",
+    doubt: float = 0.0,
 ) -> Row | None:
-    """A measured phenol or aniline as a row; None where it is no lone phenol or aniline ring."""
+    """A measured phenol or aniline as a row; None where it is no lone phenol or aniline ring. `doubt` (pKa
+    units) comes on top of the usual scatter."""
     try:
         found = dissect(smiles, {})
     except StructureError:
@@ -106,7 +110,7 @@ def measured_row(
     if set(groups) - set(RING_SLOTS):
         return None
     at_25 = to_25_c(pka, library.series[SERIES[view.kind]], celsius)
-    return Row(name, view.kind, groups, at_25, 0.0, min(n, MOST_DETERMINATIONS), MEASURED, smiles)
+    return Row(name, view.kind, groups, at_25, doubt, min(n, MOST_DETERMINATIONS), MEASURED, smiles)
 
 
 def reference_rows(library: Library, folder: Path) -> tuple[list[Row], list[str]]:
@@ -118,10 +122,16 @@ def reference_rows(library: Library, folder: Path) -> tuple[list[Row], list[str]
         for line in read_rows(folder / file):
             row = measured_row(
                 library, estimator, line["name"], line["smiles"], float(line["pka"]),
-                float(line["t_celsius"]), int(line["n"]), scaffold,
+                float(line["t_celsius"]), int(line["n"]), scaffold, _disagreement(line),
             )  # fmt: skip
             rows.append(row) if row is not None else left_out.append(line["name"])
     return rows, left_out
+
+
+def _disagreement(line: Mapping[str, str]) -> float:
+    """Half of what two determinations lie apart where they disagree: their middle is then neither of them."""
+    apart = float(line.get("high") or "nan") - float(line.get("low") or "nan")
+    return apart / 2.0 if int(line["n"]) == 2 and apart > DISAGREEMENT else 0.0
 
 
 def project_rows(library: Library) -> list[Row]:
