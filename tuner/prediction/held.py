@@ -59,6 +59,7 @@ class HeldOther:
 
 
 HELD_OTHER: dict[str, tuple[HeldOther, ...]] = {
+    "fluorescein": (HeldOther("benzoic_acid", 4.35, 0.2, 0.1, "memory:Haugland"),),
     "phenylazochromotropic acid": (HeldOther("phenol", 13.8, 0.7, 0.0, "Serjeant1979"),),
     "2-arylazo-H acid": (HeldOther("aniline", 1.5, 1.0, 0.0, "convention"),),
     "2,4-diaminoazobenzene": (HeldOther("aniline", 0.5, 1.0, 0.0, "convention"),),
@@ -74,9 +75,9 @@ HELD_OTHER: dict[str, tuple[HeldOther, ...]] = {
     "1-(2-pyridylazo)-2-naphthol": (HeldOther("pyridine", 2.4, 0.6, 0.2, "memory:hetarylazo"),),
     "1-(2-thiazolylazo)-2-naphthol": (HeldOther("azole", 2.2, 0.6, 0.2, "memory:hetarylazo"),),
 }
-"""The hydroxyl that a hydrogen bond holds, the amino group beside a hydrazone's carbonyl, ring nitrogens (the
-share of 8-hydroxyquinoline: its 5-sulfo-, 5-nitro- and 5,7-dichloro derivative, as remembered; the others are
-guesses).
+"""The carboxyl of fluorescein, the hydroxyl that a hydrogen bond holds, the amino group beside a
+hydrazone's carbonyl, ring nitrogens (the share of 8-hydroxyquinoline: its 5-sulfo-, 5-nitro- and
+5,7-dichloro derivative, as remembered; the others are guesses).
 """
 
 COUNTED_IN_PARENT = (
