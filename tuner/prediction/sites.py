@@ -14,7 +14,7 @@ from tuner.acidity.medium import medium_effect
 from tuner.brief.records import Medium
 from tuner.library.catalogue import Library
 from tuner.library.records import Series, Substituent
-from tuner.prediction.doubt import site_doubt
+from tuner.prediction.doubt import SATURATED, TIED, site_doubt
 from tuner.prediction.estimate import Estimator
 from tuner.prediction.held import (
     APPARENT_SULFONIC,
@@ -174,6 +174,8 @@ class SiteMaker:
                 spelled.update(_ends_without_charge(view, opened, acting, holder))
                 groups = self.resolve(spelled, [])
             flat = {label: lies_flat(g) if label in opened else g for label, g in groups.items()}
+            if opened == TIED:
+                flat.update(self._tied_back(flat))
             pka, sd, terms = self._model.evaluate(prepared, flat)
             return Evaluated(pka, hypot(sd, doubt), terms)
 
@@ -212,6 +214,14 @@ class SiteMaker:
                 notes=tuple(notes),
             )
         )
+
+    def _tied_back(self, groups: Mapping[str, Substituent]) -> dict[str, Substituent]:
+        """Saturated ends of a ring on the nitrogen alone: tied back, they crowd it no more than methyl does.
+
+        N-Phenylpiperidine is as weak a base as dimethylaniline (5.2 and 5.1), not as diethylaniline (6.6).
+        """
+        methyl, _ = self._estimator.group("*C")
+        return {k: methyl for k, g in groups.items() if k in TIED and SATURATED.fullmatch(g.smiles)}
 
     def _add_side_site(self, made: SiteTable, view: SiteView, medium: Medium) -> None:
         """Any other site."""
