@@ -16,7 +16,7 @@ from math import hypot
 from tuner.structure.molecule import has_match
 from tuner.structure.records import SiteView
 
-OPENED_SD = 0.5
+OPENED_SD = 0.7
 """A ring that was opened into two groups on the reporting ring (indanes, chromanes, aminofluorenes)."""
 OPENED_ALKYL_SD = 0.2
 """The same where only saturated carbon stood there (indanols, tetralols, aminoindanes)."""
@@ -27,7 +27,7 @@ OPENED_AT_NITROGEN_SD = 0.9
 -quinoxalines, julolidines, benzoquinuclidines)."""
 ESTIMATED_ON_NITROGEN_SD = 0.8
 """A group on the nitrogen that no table lists (glycosyl, indanyl, substituted benzyl, imidazolinylmethyl)."""
-ESTIMATED_SD = 0.2
+ESTIMATED_SD = 0.3
 """A group on the ring that no table lists."""
 SEVERAL_RINGS_ON_NITROGEN_SD = 0.4
 """Two aryl groups on the nitrogen, one with nitro groups: values far down on acidity functions
@@ -37,6 +37,11 @@ TIED = frozenset({"N", "N'"})
 """Both valences of the reporting nitrogen."""
 SATURATED = re.compile(r"\*C[C()]*")
 """A chain of saturated carbon."""
+
+PERI_OF_AZO = "[OX2H1]c1cccc2ccc(N=Nc)c(N)c12"
+PERI_OF_AZO_SD = 1.4
+"""A hydroxyl beside (peri) a nitrogen group that an azo group binds, on whatever core: one such dye is
+known, three units off."""
 
 DOUBTED: tuple[tuple[str, str, float], ...] = (
     ("phenol", "[OX2H1]c1ccc(cc1)[CH2]c1ccccc1[OX2H1]", 1.2),
@@ -69,6 +74,8 @@ def site_doubt(view: SiteView, smiles: str, opened: Collection[str], estimated: 
         parts.append(ESTIMATED_ON_NITROGEN_SD if label.startswith("N") else ESTIMATED_SD)
     if view.core == view.kind:
         parts += [sd for kind, pattern, sd in DOUBTED if kind == view.kind and has_match(smiles, pattern)]
+    if view.kind == "phenol" and has_match(smiles, PERI_OF_AZO):
+        parts.append(PERI_OF_AZO_SD)
     return hypot(*parts) if parts else 0.0
 
 
