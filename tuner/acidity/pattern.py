@@ -114,9 +114,9 @@ class Base:
 
 
 def amine_count(prepared: PreparedCore, groups: Mapping[str, Substituent]) -> int:
-    """How many groups the reporting nitrogen bears; 0 for phenols."""
+    """How many groups the reporting nitrogen bears, a ring that it lies in included; 0 for phenols."""
     on = [g for label, g in groups.items() if prepared.slot(label).relation == "nitrogen" and not is_empty(g)]
-    return min(len(on), AMINE_DIALKYL)
+    return min(len(on) + prepared.ring_on_nitrogen, AMINE_DIALKYL)
 
 
 def pair_effect(

@@ -61,7 +61,7 @@ def space_amine_count(
         Where hydrogen and groups are mixed at one position on the nitrogen: the ring groups then act
         differently from analog to analog.
     """
-    count = 0
+    count = prepared.ring_on_nitrogen
     for slot in prepared.slots:
         if slot.relation != "nitrogen":
             continue

@@ -7,9 +7,9 @@ Rules
   the kind that the series names (amine series end in `anilinium`). Two that the symmetry of the bare core
   exchanges count as one; two different ones are an error.
 - The scaffold is "phenol" or "aniline" where the reporting ring is a benzene ring that shares no atom with
-  another ring; what the core carries there is a fixed slot. A fused reporting ring, or a core with a
-  measured parent whose symmetry exchanges two reporting groups (sulfonephthaleins, bisphenol dyes), is a
-  scaffold of its own name.
+  another ring; what the core carries there is a fixed slot. A fused reporting ring, a reporting nitrogen
+  in a ring (N-phenylpiperidine, indoline), or a core with a measured parent whose symmetry exchanges two
+  reporting groups (sulfonephthaleins, bisphenol dyes), is a scaffold of its own name.
 - Relations on the reporting ring follow from the distance to the ring atom that carries the reporting
   group: 1 ortho, 2 meta, 3 para. Open valences of the reporting nitrogen are "nitrogen"; all else is
   "remote".
@@ -35,7 +35,15 @@ from rdkit.Chem import Descriptors
 from tuner.errors import StructureError
 from tuner.library.records import Core
 from tuner.structure.molecule import flat, parse, read_smarts
-from tuner.structure.positions import Frame, all_slots, has_twin, is_lone_benzene, label_order, permutations
+from tuner.structure.positions import (
+    Frame,
+    all_slots,
+    has_twin,
+    is_lone_benzene,
+    label_order,
+    permutations,
+    ring_bonds_on_nitrogen,
+)
 from tuner.structure.records import PreparedCore
 
 Mol = Any
@@ -235,7 +243,9 @@ def _prepare(core: Core) -> CoreForm:
     reporting, ipso = _reporting(core, mol, bare, open_atoms, automorphisms)
     ring = _reporting_ring(bare, ipso, _place(core))
     frame = Frame(core, bare, open_atoms, reporting, ipso, ring, automorphisms)
-    own = not is_lone_benzene(bare, ring) or (has_twin(frame) and core.parent_pka.known)
+    ring_on_nitrogen = ring_bonds_on_nitrogen(bare, reporting, ipso)
+    own = not is_lone_benzene(bare, ring) or ring_on_nitrogen > 0
+    own = own or (has_twin(frame) and core.parent_pka.known)
     slots, fixed_atoms = all_slots(frame, own)
     labels = list(open_atoms)
     kind = "aniline" if bare.GetAtomWithIdx(reporting).GetAtomicNum() == 7 else "phenol"
@@ -248,6 +258,7 @@ def _prepare(core: Core) -> CoreForm:
         symmetry=permutations(labels, open_atoms, automorphisms),
         bare_mass_g_mol=float(Descriptors.MolWt(bare)),
         bare_charge=int(Chem.GetFormalCharge(bare)),
+        ring_on_nitrogen=ring_on_nitrogen,
     )
     return CoreForm(
         core=core,

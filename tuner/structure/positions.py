@@ -21,6 +21,7 @@ from tuner.structure.transmission import remote_transmission
 
 Mol = Any
 
+NITROGEN = 7
 RELATION_BY_DISTANCE = {1: "ortho", 2: "meta", 3: "para"}
 
 
@@ -51,6 +52,14 @@ def is_lone_benzene(mol: Mol, ring: tuple[int, ...]) -> bool:
     """Whether a ring is all-carbon and shares no atom with another ring."""
     info = mol.GetRingInfo()
     return all(mol.GetAtomWithIdx(k).GetAtomicNum() == 6 and info.NumAtomRings(k) == 1 for k in ring)
+
+
+def ring_bonds_on_nitrogen(mol: Mol, reporting: int, ipso: int) -> int:
+    """Bonds of the reporting nitrogen, other than the one to the reporting ring, that lie in a ring."""
+    atom = mol.GetAtomWithIdx(reporting)
+    if atom.GetAtomicNum() != NITROGEN:
+        return 0
+    return sum(b.IsInRing() and b.GetOtherAtomIdx(reporting) != ipso for b in atom.GetBonds())
 
 
 def permutations(

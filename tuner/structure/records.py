@@ -30,7 +30,9 @@ class PreparedCore:
     `scaffold` is what the acidity model has a parent for: "phenol" or "aniline" where the reporting group
     sits on a lone benzene ring (whatever the core carries there is then a fixed slot), otherwise the core's
     own name. `open_labels` gives the column order of every index array. `symmetry` holds permutations of
-    the open positions (as indices, identity first) that give the same molecule.
+    the open positions (as indices, identity first) that give the same molecule. `ring_on_nitrogen` is the
+    number of bonds of the reporting nitrogen that lie in a saturated ring (2 in N-phenylpiperidine, 1 in
+    indoline): groups on the nitrogen that are no slots.
     """
 
     name: str
@@ -41,6 +43,7 @@ class PreparedCore:
     symmetry: tuple[tuple[int, ...], ...]
     bare_mass_g_mol: float  # with hydrogen at every open position
     bare_charge: int
+    ring_on_nitrogen: int = 0
 
     def slot(self, label: str) -> Slot:
         """The slot with this locant; KeyError where there is none."""
