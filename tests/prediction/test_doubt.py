@@ -11,7 +11,7 @@ from tuner.prediction.door import MoleculeDoor
     ("plain", "doubted", "least"),
     [
         ("Cc1ccc(O)cc1C", "Oc1ccc2c(c1)OCO2", 0.4),  # a ring opened on the reporting ring
-        ("CCNc1ccccc1C", "C1CCNc2ccccc21", 0.8),  # a ring opened at the nitrogen
+        ("CCNc1ccccc1CC", "C1CCNc2ccccc2C1", 0.8),  # a ring opened at the nitrogen
         ("CNc1ccccc1", "c1ccc(NC2CCc3ccccc32)cc1", 0.7),  # a group on nitrogen that no table lists
         ("CNc1ccccc1", "COCNc1ccccc1", 1.0),  # an aminal
     ],
